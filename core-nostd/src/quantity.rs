@@ -1,0 +1,101 @@
+//! What a number is, in which unit and within which range: written once, used by the check, by
+//! the message and by the random values of tests.
+
+use core::fmt;
+
+/// A named quantity with its unit and allowed range (both ends included).
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Bounded {
+    /// Term of the trade, as it reads in a message.
+    pub name: &'static str,
+    /// Unit of `min`, `max` and of the value checked; empty for a pure number.
+    pub unit: &'static str,
+    /// Smallest allowed value.
+    pub min: f64,
+    /// Largest allowed value.
+    pub max: f64,
+    /// What to look at when a value is refused.
+    pub remedy: &'static str,
+}
+
+impl Bounded {
+    /// Returns the value when it is finite and inside the range.
+    ///
+    /// # Errors
+    /// [`OutOfRange`] carrying the value and this quantity.
+    pub fn check(&'static self, value: f64) -> Result<f64, OutOfRange> {
+        // Written so that NaN fails.
+        if value >= self.min && value <= self.max {
+            Ok(value)
+        } else {
+            Err(OutOfRange { quantity: self, value, index: None })
+        }
+    }
+
+    /// As [`Bounded::check`], naming which item of a list is meant (counted from 0).
+    ///
+    /// # Errors
+    /// [`OutOfRange`] carrying the value, this quantity and the index.
+    pub fn check_at(&'static self, value: f64, index: usize) -> Result<f64, OutOfRange> {
+        self.check(value).map_err(|refused| OutOfRange { index: Some(index), ..refused })
+    }
+}
+
+/// A value that was refused: which quantity, which value, what is allowed.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct OutOfRange {
+    /// The quantity with its range and remedy.
+    pub quantity: &'static Bounded,
+    /// The value that was given.
+    pub value: f64,
+    /// Position in a list, counted from 0, where there is one.
+    pub index: Option<usize>,
+}
+
+impl fmt::Display for OutOfRange {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        let q = self.quantity;
+        write!(f, "{} ", q.name)?;
+        if let Some(index) = self.index {
+            write!(f, "(item {}) ", index.saturating_add(1))?;
+        }
+        write!(
+            f,
+            "is {} {}; allowed is {} to {} {}. {}",
+            self.value, q.unit, q.min, q.max, q.unit, q.remedy
+        )
+    }
+}
+
+impl core::error::Error for OutOfRange {}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use std::string::ToString;
+
+    static DIAMETER: Bounded = Bounded {
+        name: "tank diameter",
+        unit: "m",
+        min: 1.0,
+        max: 200.0,
+        remedy: "Give it in metres.",
+    };
+
+    #[test]
+    fn nan_and_infinity_are_refused() {
+        for value in [f64::NAN, f64::INFINITY, f64::NEG_INFINITY, 0.5, 201.0] {
+            assert!(DIAMETER.check(value).is_err(), "{value} must be refused");
+        }
+        assert_eq!(DIAMETER.check(52.0), Ok(52.0));
+    }
+
+    #[test]
+    fn message_names_value_range_and_remedy() {
+        let message = DIAMETER.check_at(-3.0, 1).unwrap_err().to_string();
+        assert_eq!(
+            message,
+            "tank diameter (item 2) is -3 m; allowed is 1 to 200 m. Give it in metres."
+        );
+    }
+}
