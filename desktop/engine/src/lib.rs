@@ -1,0 +1,2 @@
+//! What the desktop programs share. No formula of the ground lives here: numbers come from
+//! `brimstead_core`, this crate brings them in, sets them side by side and hands them out.
