@@ -1,0 +1,23 @@
+#!/usr/bin/env bash
+# Builds the program and runs its main job on the demo site: two fills of the same tank, one that
+# goes as expected and one that does not, each compared reading by reading with what the ground
+# model expects. Arguments, if any, are passed to the program instead.
+set -euo pipefail
+cd "$(dirname "$0")/.."
+. tests/setup.sh
+
+need_cargo
+cargo build --locked --release --bin brimstead
+program=target/release/brimstead
+if [ $# -gt 0 ]; then
+  exec "$program" "$@"
+fi
+
+for run in run-good run-bad; do
+  out=target/demo/$run
+  mkdir -p "$out"
+  printf '\n== data-demo/%s (an invented site)\n' "$run"
+  "$program" compare data-demo/site.json --readings data-demo/"$run"/* --out "$out"
+  printf 'Written:\n'
+  find "$PWD/$out" -type f | sort | sed 's/^/  /'
+done
