@@ -6,12 +6,13 @@
 packages() {
   local why=$1 log
   shift
-  echo "set-up: installing $* (Debian packages): $why"
+  echo "set-up: Debian packages are missing: $* ($why)"
   if [ "$(id -u)" -ne 0 ]; then
-    echo "set-up: this needs root. Run the next line, then start again:"
+    echo "set-up: installing them needs root. Run the next line, then start again:"
     echo "  sudo apt-get update && sudo apt-get install --yes --no-install-recommends $*"
     exit 3
   fi
+  echo "set-up: installing them with apt-get"
   log=$(mktemp)
   if ! { apt-get update && DEBIAN_FRONTEND=noninteractive \
     apt-get install --yes --no-install-recommends "$@"; } >"$log" 2>&1; then
