@@ -62,7 +62,7 @@ step "core for the logger's processor" bash firmware-demo/build.sh core
 step "no panic is reachable in the core" bash firmware-demo/build.sh no-panic
 step "logger image" bash firmware-demo/build.sh image
 step "emulated logger agrees with this machine" \
-  cargo test --locked -p brimstead-tests --test emulated_logger -- --ignored
+  cargo test --locked -p brimstead-tests --test emulated_logger -- --ignored --nocapture
 
 printf '\n== summary (%d s)\n' $((SECONDS - started))
 printf '%s\n' "${summary[@]}"
