@@ -33,5 +33,6 @@ pub mod config;
 pub mod ground;
 pub mod load;
 pub mod quantity;
+pub mod settlement;
 pub mod units;
 pub mod working;

@@ -1,4 +1,13 @@
 //! Layers, ground water, in-situ stress and stress history.
+//!
+//! [`Ground`] is what a site file says. [`Profile::new`] is the door: it checks every value and
+//! how they fit together, and then answers for stress, stress history and strength at a depth.
+
+mod check;
+mod profile;
+
+pub use check::*;
+pub use profile::{InSitu, LayerAt, Profile};
 
 use crate::config::{MAX_LAYERS, MAX_PROFILE_POINTS, Name};
 use heapless::Vec;
@@ -40,8 +49,21 @@ pub enum Preconsolidation {
     Ocr(f64),
     /// Pre-overburden pressure: sigma_p' = sigma_v0' + POP, kPa.
     PopKpa(f64),
-    /// The pressure itself, constant over the layer, kPa (never below sigma_v0').
+    /// The pressure itself, constant over the layer, kPa. Below the depth at which sigma_v0'
+    /// reaches it the soil is normally consolidated: sigma_p' = sigma_v0'.
     ValueKpa(f64),
+}
+
+impl Preconsolidation {
+    /// Preconsolidation pressure, kPa, where the in-situ effective stress is this, kPa.
+    #[must_use]
+    pub fn pressure_kpa(&self, effective_kpa: f64) -> f64 {
+        match *self {
+            Self::Ocr(ratio) => ratio * effective_kpa,
+            Self::PopKpa(pop_kpa) => effective_kpa + pop_kpa,
+            Self::ValueKpa(value_kpa) => value_kpa.max(effective_kpa),
+        }
+    }
 }
 
 /// One horizontal layer. Values are those of the best estimate; uncertainty is a matter of the
@@ -92,18 +114,31 @@ pub struct Layer {
 pub enum GroundWater {
     /// Hydrostatic below a water table at this depth, m (none above it).
     Hydrostatic {
-        /// Depth of the water table, m.
+        /// Depth of the water table, m; negative where free water stands above the ground.
         water_table_m: f64,
     },
     /// A measured profile of (depth m, pore pressure kPa), linear between points; beyond the
     /// last point it grows with the unit weight of water; above the first it is that of the
     /// first falling with the unit weight of water, not below 0.
     Profile {
-        /// Depth of the water table, which parts the two unit weights, m.
+        /// Depth of the water table, which parts the two unit weights, m; negative where free
+        /// water stands above the ground.
         water_table_m: f64,
         /// Points by rising depth.
         points: Vec<(f64, f64), MAX_PROFILE_POINTS>,
     },
+}
+
+impl GroundWater {
+    /// Depth of the water table, m.
+    #[must_use]
+    pub fn water_table_m(&self) -> f64 {
+        match *self {
+            Self::Hydrostatic { water_table_m } | Self::Profile { water_table_m, .. } => {
+                water_table_m
+            }
+        }
+    }
 }
 
 /// Flow at the bottom of the lowest layer.
