@@ -302,3 +302,77 @@ fn loads(
     }
     (per_kpa, dead)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use serde_json::json;
+
+    const LIKELY: Factors =
+        Factors { compressibility: 1.0, cv: 1.0, ch: 1.0, pore_pressure_response: 1.0, young: 1.0 };
+
+    /// One layer of 4 m, drained above and below, under a tank so wide that the stress is even.
+    fn one_layer(baseline: &str, drains: serde_json::Value) -> Site {
+        serde_json::from_value(json!({
+            "water": {"water_table_m": 0.0, "unit_weight_kn_m3": 9.81},
+            "layers": [{"thickness_m": 4.0, "unit_weight_above_water_kn_m3": 17.0,
+                "unit_weight_below_water_kn_m3": 17.0,
+                "compressibility": {"compression_ratio": 0.2, "recompression_ratio": 0.02},
+                "preconsolidation": {"ocr": 1.0}, "secondary_ratio": 0.0, "cv_m2_per_year": 1.0,
+                "ch_m2_per_year": 3.0, "permeability_m_per_s": 1e-9, "young_undrained_kpa": 1e9,
+                "pore_pressure_response": 1.0, "drained": false}],
+            "base": {"drainage": "drained"}, "drains": drains,
+            "tanks": [{"x_m": 0.0, "y_m": 0.0, "diameter_m": 4000.0, "floor_pressure_kpa": 100.0,
+                "pad_pressure_kpa": 0.0, "excavation_relief_kpa": 0.0,
+                "shell_line_load_kn_m": 0.0, "ring_line_load_kn_m": 0.0}],
+            "liquids": [{"unit_weight_kn_m3": 9.81}],
+            "dead_load_since": "2025-01-01T00:00:00Z", "baseline": baseline,
+            "stages": [], "band": {"cases": []}, "instruments": [], "readings": []
+        }))
+        .unwrap()
+    }
+
+    fn mean_excess_kpa(column: &Column) -> f64 {
+        column.cells.iter().map(|c| c.excess_kpa).sum::<f64>() / column.cells.len() as f64
+    }
+
+    #[test]
+    fn half_of_the_excess_is_gone_at_the_time_factor_of_terzaghi() {
+        // U = 50 % at Tv = 0.1967 (Taylor 1948, table): 0.1967 x 2^2 / 1 m2/year = 287.4 days.
+        let column =
+            Column::new(&one_layer("2025-10-15T09:00:00Z", json!(null)), &LIKELY, 0.0, 0.0);
+        let left = mean_excess_kpa(&column) / 100.0;
+        assert!((left - 0.5).abs() < 0.004, "mean excess left: {left}");
+    }
+
+    #[test]
+    fn drains_empty_the_cells_at_hansbos_rate() {
+        // n = 1.155/0.066 = 17.50, mu = ln(17.5/2) + 2.5 ln 2 - 0.75 = 3.152,
+        // 8 ch/(De^2 mu) = 24/(1.334 x 3.152) = 5.708 per year.
+        let drains = json!({"pattern": "triangular", "spacing_m": 1.1, "equivalent_diameter_m": 0.066,
+            "smear_ratio": 2.0, "permeability_ratio_h_over_s": 2.5, "top_m": 0.0, "base_m": 4.0,
+            "zone_radius_m": 10.0});
+        let site = one_layer("2025-01-01T00:00:00Z", drains);
+        let rate = drain_rate_per_s(&site, &site.layers[0], &LIKELY, 5.0, 0.0, 2.0) * YEAR_S;
+        assert!((rate - 5.708).abs() < 0.01, "rate per year: {rate}");
+        let outside = drain_rate_per_s(&site, &site.layers[0], &LIKELY, 11.0, 0.0, 2.0);
+        assert!(outside == 0.0, "no drains beyond their zone");
+    }
+
+    #[test]
+    fn settlement_under_a_load_long_gone_by_is_that_of_the_compression_index() {
+        // 80 years: no excess is left. Normally consolidated: sum of CR log10((s0 + 100)/s0).
+        let mut column =
+            Column::new(&one_layer("2025-01-01T00:00:00Z", json!(null)), &LIKELY, 0.0, 0.0);
+        for _ in 0..4 * 365 * 20 {
+            column.advance(EARLY_STEP_S, 0.0);
+        }
+        column.note_largest_stress();
+        let by_hand: f64 = (0..40)
+            .map(|i| (f64::from(i) + 0.5) * 0.1 * (17.0 - 9.81))
+            .map(|s0| 100.0 * 0.2 * ((s0 + 100.0) / s0).log10())
+            .sum();
+        let settled = column.settlement_mm(0.0);
+        assert!((settled - by_hand).abs() < 1e-4 * by_hand, "{settled} mm against {by_hand} mm");
+    }
+}
