@@ -11,6 +11,18 @@ pub const MAX_TANKS: usize = 6;
 /// Cells of a consolidation column on the logger and in every comparison, so that both compute
 /// the same bits.
 pub const COLUMN_CELLS: usize = 60;
+/// Rod extensions booked on one settlement plate.
+pub const MAX_ROD_EXTENSIONS: usize = 16;
+/// Lengths of rod in use on a site.
+pub const MAX_ROD_LENGTHS: usize = 4;
+/// Readings an instrument's validity checks look back over.
+pub const CHECK_HISTORY: usize = 16;
+/// Limit rules of one instrument (a band, a curve, a fixed value and a rate together).
+pub const MAX_RULES: usize = 4;
+/// Points of a limit curve over applied pressure.
+pub const MAX_CURVE_POINTS: usize = 12;
+/// Parts into which a rate window is divided; readings of one part are averaged.
+pub const RATE_PARTS: usize = 16;
 
 /// A short owned name.
 pub type Name = heapless::String<NAME_BYTES>;

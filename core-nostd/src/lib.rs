@@ -29,8 +29,10 @@
 #[cfg(any(test, doctest))]
 extern crate std;
 
+pub mod comparison;
 pub mod config;
 pub mod ground;
+pub mod instrument;
 pub mod load;
 pub mod quantity;
 pub mod settlement;

@@ -2,6 +2,7 @@
 //! the message and by the random values of tests.
 
 use core::fmt;
+use serde::{Deserialize, Serialize};
 
 /// A named quantity with its unit and allowed range (both ends included).
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -69,6 +70,39 @@ impl fmt::Display for OutOfRange {
 
 impl core::error::Error for OutOfRange {}
 
+/// What the calculation expects an instrument to read at one moment: the likely value and the ends
+/// of the band, in the instrument's own unit.
+///
+/// `low <= likely <= high`, all finite; [`Expected::new`] checks it. Code that receives one from
+/// outside asks [`Expected::is_band`] before it relies on it.
+#[derive(Debug, Clone, Copy, PartialEq, Serialize, Deserialize)]
+pub struct Expected {
+    /// Lower end of the band.
+    pub low: f64,
+    /// Most likely value.
+    pub likely: f64,
+    /// Upper end of the band.
+    pub high: f64,
+}
+
+impl Expected {
+    /// A band from its ends and the likely value; `None` unless all are finite and in order.
+    #[must_use]
+    pub fn new(low: f64, likely: f64, high: f64) -> Option<Self> {
+        let band = Self { low, likely, high };
+        band.is_band().then_some(band)
+    }
+
+    /// Whether the three values are finite and in order.
+    #[must_use]
+    pub fn is_band(&self) -> bool {
+        self.low.is_finite()
+            && self.high.is_finite()
+            && self.low <= self.likely
+            && self.likely <= self.high
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -88,6 +122,22 @@ mod tests {
             assert!(DIAMETER.check(value).is_err(), "{value} must be refused");
         }
         assert_eq!(DIAMETER.check(52.0), Ok(52.0));
+    }
+
+    #[test]
+    fn a_band_out_of_order_or_not_finite_is_refused() {
+        assert!(Expected::new(1.0, 2.0, 3.0).is_some());
+        assert!(Expected::new(2.0, 2.0, 2.0).is_some());
+        for (low, likely, high) in [
+            (3.0, 2.0, 1.0),
+            (1.0, 4.0, 3.0),
+            (f64::NAN, 2.0, 3.0),
+            (1.0, f64::NAN, 3.0),
+            (f64::NEG_INFINITY, 2.0, 3.0),
+            (1.0, 2.0, f64::INFINITY),
+        ] {
+            assert!(Expected::new(low, likely, high).is_none(), "{low} {likely} {high}");
+        }
     }
 
     #[test]
