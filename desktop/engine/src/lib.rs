@@ -1,2 +1,6 @@
 //! What the desktop programs share. No formula of the ground lives here: numbers come from
 //! `brimstead_core`, this crate brings them in, sets them side by side and hands them out.
+
+pub mod site;
+pub mod time;
+pub mod units;

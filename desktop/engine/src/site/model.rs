@@ -1,0 +1,629 @@
+//! The site file, declared key by key.
+
+use super::bounds as b;
+use super::check;
+use super::reader::{
+    ByChoice, ByName, Flag, Instant, InstantText, List, Maybe, Nested, Number, OneOf, OrNull, Pair,
+    Text, Whole, choices, record, union,
+};
+use crate::units::UnitName;
+use brimstead_core::config::{MAX_LAYERS, MAX_PROFILE_POINTS, MAX_TANKS, NAME_BYTES};
+use std::collections::BTreeMap;
+
+/// A name that crosses to the core and the loggers.
+const NAME: Text = Text(1..=NAME_BYTES);
+/// Any other short text.
+const SHORT: Text = Text(1..=200);
+/// Free text.
+const FREE: Text = Text(0..=20_000);
+/// Most entries of a list that has no fixed capacity elsewhere.
+const MANY: usize = 1000;
+
+record! {
+    /// A site: ground, tanks, load history, plan, instruments, limits and how its readings are
+    /// written.
+    pub struct SiteFile {
+        /// Format and version of this file.
+        format: Format => OneOf::new(),
+        /// What the site is.
+        site: Site => Nested::new(),
+        /// Ground water before loading.
+        water: Water => Nested::new(),
+        /// Layers from ground level down, best estimate.
+        layers: Vec<Layer> => List(Nested::new(), 1..=MAX_LAYERS),
+        /// What lies below the lowest layer.
+        base: Base => Nested::new(),
+        /// Vertical drains, or null for none.
+        drains: Option<Drains> => OrNull(Nested::new()),
+        /// Tanks that load the ground; the first is the tank under test.
+        tanks: Vec<Tank> => List(Nested::new(), 1..=MAX_TANKS),
+        /// What the tank under test holds, from when.
+        liquids: Vec<Liquid> => List(Nested::new(), 1..=MANY),
+        /// When the dead load of the tanks came on.
+        dead_load_since: InstantText => Instant,
+        /// Instant of the agreed reference set: settlement and excess pore pressure count from it.
+        baseline: InstantText => Instant,
+        /// Planned rises and holds, in order.
+        stages: Vec<Stage> => List(Nested::new(), 0..=MANY),
+        /// The cases that span the expected band.
+        band: Band => Nested::new(),
+        /// The instruments.
+        instruments: Vec<Instrument> => List(Nested::new(), 0..=MANY),
+        /// Limits of every instrument of a kind that has none of its own.
+        limit_defaults: BTreeMap<InstrumentKind, LimitDefaults> => ByChoice(OneOf::new(), Nested::new()),
+        /// How files of readings are written, one entry for each kind of file.
+        readings: Vec<ReadingsLayout> => List(Nested::new(), 0..=MANY),
+    }
+    between SiteParts => check::between_sections
+}
+
+choices! {
+    /// Format and version of a site file.
+    pub enum Format {
+        /// The first version.
+        V1 = "brimstead-site/1",
+    }
+}
+
+record! {
+    /// What the site is.
+    pub struct Site {
+        /// Name of the site.
+        name: String => SHORT,
+        /// true when site, people and readings are invented.
+        invented: bool => Flag,
+        /// Time zone in which times are shown (IANA name).
+        time_zone: String => SHORT,
+        /// Anything worth knowing.
+        note: String => FREE,
+    }
+}
+
+record! {
+    /// Ground water before loading.
+    pub struct Water {
+        /// Depth of the water table, m.
+        water_table_m: f64 => Number(&b::WATER_TABLE),
+        /// Unit weight of the ground water, kN/m3.
+        unit_weight_kn_m3: f64 => Number(&b::WATER_UNIT_WEIGHT),
+        /// Measured pore pressure as [depth m, kPa] by rising depth; hydrostatic when left out.
+        profile: Option<Vec<(f64, f64)>> =>
+            Maybe(List(Pair(Number(&b::DEPTH), Number(&b::PORE_PRESSURE)), 2..=MAX_PROFILE_POINTS)),
+    }
+}
+
+record! {
+    /// One horizontal layer, best estimate.
+    pub struct Layer {
+        /// Name on drawings and in messages.
+        name: String => NAME,
+        /// Thickness, m.
+        thickness_m: f64 => Number(&b::THICKNESS),
+        /// Bulk unit weight above the water table, kN/m3.
+        unit_weight_above_water_kn_m3: f64 => Number(&b::UNIT_WEIGHT),
+        /// Bulk (saturated) unit weight below the water table, kN/m3.
+        unit_weight_below_water_kn_m3: f64 => Number(&b::UNIT_WEIGHT),
+        /// One-dimensional compressibility.
+        compressibility: Compressibility => Nested::new(),
+        /// Stress history.
+        preconsolidation: Preconsolidation => Nested::new(),
+        /// Secondary compression as strain per log10 cycle of time; 0 for none.
+        secondary_ratio: f64 => Number(&b::SECONDARY_RATIO),
+        /// Coefficient of consolidation for vertical flow, m2/year.
+        cv_m2_per_year: f64 => Number(&b::CONSOLIDATION_COEFFICIENT),
+        /// Coefficient of consolidation for horizontal flow, m2/year.
+        ch_m2_per_year: f64 => Number(&b::CONSOLIDATION_COEFFICIENT),
+        /// Vertical permeability, m/s.
+        permeability_m_per_s: f64 => Number(&b::PERMEABILITY),
+        /// Undrained Young's modulus, kPa.
+        young_undrained_kpa: f64 => Number(&b::YOUNG),
+        /// Drained Young's modulus, kPa.
+        young_drained_kpa: f64 => Number(&b::YOUNG),
+        /// Drained Poisson's ratio.
+        poisson_drained: f64 => Number(&b::POISSON),
+        /// Undrained shear strength at the top of the layer, kPa; 0 for a drained layer.
+        undrained_strength_kpa: f64 => Number(&b::UNDRAINED_STRENGTH),
+        /// Its gradient with depth, kPa/m.
+        undrained_strength_gradient_kpa_per_m: f64 => Number(&b::UNDRAINED_STRENGTH_GRADIENT),
+        /// Excess pore pressure per kPa of vertical total stress increment.
+        pore_pressure_response: f64 => Number(&b::PORE_PRESSURE_RESPONSE),
+        /// true for a free-draining layer.
+        drained: bool => Flag,
+    }
+}
+
+union! {
+    /// One-dimensional compressibility.
+    pub enum Compressibility {
+        words {}
+        forms {
+            /// By compression and recompression index.
+            Index {
+                /// Initial void ratio.
+                void_ratio: f64 => Number(&b::VOID_RATIO),
+                /// Compression index Cc.
+                cc: f64 => Number(&b::COMPRESSION_INDEX),
+                /// Recompression index Cr.
+                cr: f64 => Number(&b::RECOMPRESSION_INDEX),
+            }
+            /// By strain per log10 cycle of effective stress.
+            Ratio {
+                /// Compression ratio CR = Cc/(1+e0).
+                compression_ratio: f64 => Number(&b::COMPRESSION_RATIO),
+                /// Recompression ratio RR = Cr/(1+e0).
+                recompression_ratio: f64 => Number(&b::RECOMPRESSION_RATIO),
+            }
+            /// By a constant modulus, for sands and stiff layers.
+            Modulus {
+                /// Constrained modulus, kPa.
+                constrained_modulus_kpa: f64 => Number(&b::CONSTRAINED_MODULUS),
+            }
+        }
+    }
+}
+
+union! {
+    /// Stress history of a layer.
+    pub enum Preconsolidation {
+        words {}
+        forms {
+            /// By overconsolidation ratio.
+            Ocr {
+                /// Overconsolidation ratio.
+                ocr: f64 => Number(&b::OCR),
+            }
+            /// By pre-overburden pressure.
+            Pop {
+                /// Pre-overburden pressure, kPa.
+                pop_kpa: f64 => Number(&b::POP),
+            }
+            /// By the pressure itself.
+            Value {
+                /// Preconsolidation pressure, constant over the layer, kPa.
+                value_kpa: f64 => Number(&b::PRECONSOLIDATION),
+            }
+        }
+    }
+}
+
+record! {
+    /// What lies below the lowest layer.
+    pub struct Base {
+        /// Flow at the base.
+        drainage: BaseDrainage => OneOf::new(),
+        /// Stiffness of the base.
+        stiffness: BaseStiffness => Nested::new(),
+    }
+}
+
+choices! {
+    /// Flow at the base of the lowest layer.
+    pub enum BaseDrainage {
+        /// Excess pore pressure is zero there.
+        Drained = "drained",
+        /// No flow.
+        Closed = "closed",
+    }
+}
+
+union! {
+    /// Stiffness below the lowest layer.
+    pub enum BaseStiffness {
+        words {
+            /// Nothing moves there.
+            Rigid = "rigid",
+        }
+        forms {
+            /// An elastic half-space.
+            HalfSpace {
+                /// Young's modulus, kPa.
+                young_kpa: f64 => Number(&b::YOUNG),
+                /// Poisson's ratio.
+                poisson: f64 => Number(&b::POISSON),
+            }
+        }
+    }
+}
+
+record! {
+    /// Vertical drains.
+    pub struct Drains {
+        /// Pattern in plan.
+        pattern: DrainPattern => OneOf::new(),
+        /// Spacing, m.
+        spacing_m: f64 => Number(&b::DRAIN_SPACING),
+        /// Equivalent diameter, m.
+        equivalent_diameter_m: f64 => Number(&b::DRAIN_DIAMETER),
+        /// Diameter of the smear zone by that of the drain.
+        smear_ratio: f64 => Number(&b::SMEAR_RATIO),
+        /// Horizontal permeability undisturbed by that in the smear zone.
+        permeability_ratio_h_over_s: f64 => Number(&b::SMEAR_PERMEABILITY_RATIO),
+        /// Discharge capacity, m3/year; null for no well resistance.
+        discharge_m3_per_year: Option<f64> => OrNull(Number(&b::DRAIN_DISCHARGE)),
+        /// Depth of the top, m.
+        top_m: f64 => Number(&b::DEPTH),
+        /// Depth of the tip, m.
+        base_m: f64 => Number(&b::DEPTH),
+        /// Longest way of the water inside a drain, m.
+        length_m: f64 => Number(&b::DRAIN_LENGTH),
+        /// Radius around the axis of the tank under test that has drains, m.
+        zone_radius_m: f64 => Number(&b::ZONE_RADIUS),
+    }
+}
+
+choices! {
+    /// Pattern of drains in plan.
+    pub enum DrainPattern {
+        /// Equilateral triangles.
+        Triangular = "triangular",
+        /// Squares.
+        Square = "square",
+    }
+}
+
+record! {
+    /// A storage tank.
+    pub struct Tank {
+        /// Name on drawings and in messages.
+        name: String => NAME,
+        /// Axis, east, m.
+        x_m: f64 => Number(&b::COORDINATE),
+        /// Axis, north, m.
+        y_m: f64 => Number(&b::COORDINATE),
+        /// Diameter, m.
+        diameter_m: f64 => Number(&b::DIAMETER),
+        /// Height of the shell, m.
+        shell_height_m: f64 => Number(&b::SHELL_HEIGHT),
+        /// Depth of the loaded level below ground level, m.
+        loaded_depth_m: f64 => Number(&b::LOADED_DEPTH),
+        /// Floor weight, kPa.
+        floor_pressure_kpa: f64 => Number(&b::FLOOR_PRESSURE),
+        /// Foundation pad weight, kPa.
+        pad_pressure_kpa: f64 => Number(&b::PAD_PRESSURE),
+        /// Excavated soil, kPa, given positive and taken off.
+        excavation_relief_kpa: f64 => Number(&b::EXCAVATION_RELIEF),
+        /// Shell with the part of the roof it carries, kN/m.
+        shell_line_load_kn_m: f64 => Number(&b::LINE_LOAD),
+        /// Ring wall or ring pad, kN/m.
+        ring_line_load_kn_m: f64 => Number(&b::LINE_LOAD),
+        /// Constant liquid level of a neighbour, m; not for the tank under test.
+        liquid_level_m: Option<f64> => Maybe(Number(&b::LIQUID_LEVEL)),
+        /// Stated rate at which the tank can be lowered, m3/h.
+        pump_rate_m3_per_h: Option<f64> => Maybe(Number(&b::PUMP_RATE)),
+    }
+}
+
+record! {
+    /// What the tank under test holds from an instant on.
+    pub struct Liquid {
+        /// From when.
+        from: InstantText => Instant,
+        /// Name of the liquid.
+        name: String => NAME,
+        /// Unit weight, kN/m3.
+        unit_weight_kn_m3: f64 => Number(&b::LIQUID_UNIT_WEIGHT),
+    }
+}
+
+record! {
+    /// A planned change of the liquid level with its hold.
+    pub struct Stage {
+        /// Name of the stage.
+        name: String => NAME,
+        /// Start of the change.
+        start: InstantText => Instant,
+        /// End of the change.
+        end: InstantText => Instant,
+        /// Liquid level at the end, m.
+        to_level_m: f64 => Number(&b::LIQUID_LEVEL),
+        /// Until when it is held.
+        hold_until: InstantText => Instant,
+    }
+}
+
+record! {
+    /// The cases that span the expected band.
+    pub struct Band {
+        /// Each case multiplies the best estimate.
+        cases: Vec<BandCase> => List(Nested::new(), 1..=16),
+    }
+}
+
+record! {
+    /// One case: multipliers of the best estimate.
+    pub struct BandCase {
+        /// Name of the case.
+        name: String => NAME,
+        /// On the compressibility of every layer.
+        compressibility: f64 => Number(&b::MULTIPLIER),
+        /// On cv.
+        cv: f64 => Number(&b::MULTIPLIER),
+        /// On ch.
+        ch: f64 => Number(&b::MULTIPLIER),
+        /// On the pore-pressure response.
+        pore_pressure_response: f64 => Number(&b::MULTIPLIER),
+        /// On Young's moduli.
+        young: f64 => Number(&b::MULTIPLIER),
+    }
+}
+
+choices! {
+    /// Kind of instrument.
+    pub enum InstrumentKind {
+        /// Pore pressure at a depth.
+        Piezometer = "piezometer",
+        /// Settlement of a plate with a rod.
+        SettlementPlate = "settlement_plate",
+        /// Settlement by the pressure of a liquid column.
+        SettlementCell = "settlement_cell",
+        /// Settlement of a magnet on an extensometer.
+        Magnet = "magnet",
+        /// Settlement of a levelled point.
+        SurveyPoint = "survey_point",
+        /// Liquid level in the tank under test.
+        LevelGauge = "level_gauge",
+    }
+}
+
+choices! {
+    /// Unit of the readings of an instrument.
+    pub enum InstrumentUnit {
+        /// Kilopascal.
+        Kpa = "kPa",
+        /// Metre.
+        Metre = "m",
+        /// Millimetre.
+        Millimetre = "mm",
+    }
+}
+
+record! {
+    /// An instrument.
+    pub struct Instrument {
+        /// Its name, used everywhere.
+        id: String => NAME,
+        /// Kind.
+        kind: InstrumentKind => OneOf::new(),
+        /// Place, east, m.
+        x_m: f64 => Number(&b::COORDINATE),
+        /// Place, north, m.
+        y_m: f64 => Number(&b::COORDINATE),
+        /// Depth below ground level, m.
+        depth_m: f64 => Number(&b::DEPTH),
+        /// Unit of its readings.
+        unit: InstrumentUnit => OneOf::new(),
+        /// Noise of a reading, one standard deviation, in its unit.
+        noise_sd: f64 => Number(&b::NOISE),
+        /// Lowest and highest reading it can give, in its unit.
+        range: (f64, f64) => Pair(Number(&b::READING), Number(&b::READING)),
+        /// Age at which its last reading is stale, min.
+        stale_after_min: f64 => Number(&b::STALE_AFTER),
+        /// Instruments that should agree with it.
+        neighbours: Vec<String> => List(NAME, 0..=16),
+        /// true when its tip goes down with the ground.
+        tip_sinks: bool => Flag,
+        /// true when it is open to the air pressure.
+        vented: bool => Flag,
+        /// Calibration, when raw digits are read.
+        calibration: Option<Calibration> => Maybe(Nested::new()),
+        /// true for the level gauge that gives the load, when there are several.
+        master: Option<bool> => Maybe(Flag),
+        /// Its own limits, in place of those of its kind.
+        limits: Option<Vec<Limit>> => Maybe(List(Nested::new(), 0..=16)),
+        /// Its own persistence, in place of that of its kind.
+        persistence: Option<Persistence> => Maybe(Nested::new()),
+        /// Its own hysteresis in its unit, in place of that of its kind.
+        hysteresis: Option<f64> => Maybe(Number(&b::HYSTERESIS)),
+    }
+}
+
+record! {
+    /// Linear calibration of a vibrating-wire gauge.
+    pub struct Calibration {
+        /// Zero reading, digits.
+        digits_zero: f64 => Number(&b::DIGITS),
+        /// Gauge factor, kPa per digit: pressure is factor times (zero less reading).
+        factor_kpa_per_digit: f64 => Number(&b::DIGITS_FACTOR),
+        /// Temperature at the zero reading, C.
+        temperature_zero_c: f64 => Number(&b::TEMPERATURE),
+        /// Temperature factor, kPa per C of rise.
+        temperature_factor_kpa_per_c: f64 => Number(&b::TEMPERATURE_FACTOR),
+        /// Barometric pressure at the zero reading, kPa.
+        barometer_zero_kpa: f64 => Number(&b::BAROMETER),
+        /// Whether the temperature correction is applied.
+        apply_temperature: bool => Flag,
+        /// Whether the barometer correction is applied.
+        apply_barometer: bool => Flag,
+    }
+}
+
+choices! {
+    /// Level of alarm that a limit raises.
+    pub enum Trigger {
+        /// Re-read, check the instrument and its neighbours.
+        Watch = "watch",
+        /// Stop raising; the responsible engineer reviews.
+        Review = "review",
+        /// Stop filling, clear the area, act by the site's plan.
+        Stop = "stop",
+    }
+}
+
+choices! {
+    /// Which side of the limit is bad.
+    pub enum Direction {
+        /// Above it.
+        Above = "above",
+        /// Below it.
+        Below = "below",
+        /// Outside it on either side.
+        Either = "either",
+    }
+}
+
+union! {
+    /// How a limit is given.
+    pub enum LimitRule {
+        words {}
+        forms {
+            /// As a multiple of the expected band about the expected reading.
+            Band {
+                /// 1 is the edge of the band.
+                band_multiple: f64 => Number(&b::BAND_MULTIPLE),
+            }
+            /// As a curve over applied pressure.
+            Curve {
+                /// Points [applied pressure kPa, value in the unit of the instrument].
+                applied_pressure_curve: Vec<(f64, f64)> =>
+                    List(Pair(Number(&b::APPLIED_PRESSURE), Number(&b::READING)), 2..=32),
+            }
+            /// As a fixed value.
+            Value {
+                /// In the unit of the instrument.
+                value: f64 => Number(&b::READING),
+            }
+            /// As a rate.
+            Rate {
+                /// In the unit of the instrument per day.
+                rate_per_day: f64 => Number(&b::RATE),
+                /// Time over which the rate is taken, h.
+                window_h: f64 => Number(&b::WINDOW),
+            }
+        }
+    }
+}
+
+record! {
+    /// One limit.
+    pub struct Limit {
+        /// What it raises.
+        trigger: Trigger => OneOf::new(),
+        /// Where it lies.
+        rule: LimitRule => Nested::new(),
+        /// Which side is bad.
+        direction: Direction => OneOf::new(),
+    }
+}
+
+record! {
+    /// How long a limit must be passed before the trigger is confirmed.
+    pub struct Persistence {
+        /// Consecutive readings.
+        readings: u32 => Whole(1..=100),
+        /// And at least so many minutes.
+        minutes: f64 => Number(&b::PERSISTENCE_MINUTES),
+    }
+}
+
+record! {
+    /// Limits of every instrument of a kind.
+    pub struct LimitDefaults {
+        /// The limits.
+        limits: Vec<Limit> => List(Nested::new(), 0..=16),
+        /// How long a limit must be passed.
+        persistence: Persistence => Nested::new(),
+        /// How far a reading must come back before a trigger falls, in the unit of the kind.
+        hysteresis: f64 => Number(&b::HYSTERESIS),
+    }
+}
+
+choices! {
+    /// What parts the columns of a file.
+    pub enum Delimiter {
+        /// Comma.
+        Comma = ",",
+        /// Semicolon.
+        Semicolon = ";",
+        /// Tabulator.
+        Tab = "\t",
+        /// Vertical bar.
+        Bar = "|",
+    }
+}
+
+choices! {
+    /// What stands before the decimals of a number.
+    pub enum Decimal {
+        /// A point.
+        Point = ".",
+        /// A comma.
+        Comma = ",",
+    }
+}
+
+choices! {
+    /// How characters are written as bytes.
+    pub enum FileEncoding {
+        /// UTF-8, with or without byte order mark.
+        Utf8 = "utf-8",
+        /// UTF-16, low byte first.
+        Utf16Le = "utf-16le",
+        /// UTF-16, high byte first.
+        Utf16Be = "utf-16be",
+        /// Western single bytes; reads Latin-1 too.
+        Windows1252 = "windows-1252",
+    }
+}
+
+choices! {
+    /// What a column of an instrument holds.
+    pub enum Signal {
+        /// What the gauge gives, before calibration.
+        Digits = "digits",
+        /// A value in a unit.
+        Engineering = "engineering",
+    }
+}
+
+union! {
+    /// What a column is.
+    pub enum Column {
+        words {}
+        forms {
+            /// The readings of an instrument.
+            Instrument {
+                /// Which one.
+                instrument: String => NAME,
+                /// Unit in the file, converted to that of the instrument.
+                unit: UnitName => OneOf::new(),
+                /// Raw digits or engineering values; engineering when left out.
+                raw: Option<Signal> => Maybe(OneOf::new()),
+            }
+            /// Something else that a reduction needs.
+            Channel {
+                /// "barometer", or "temperature:" and the id of an instrument.
+                channel: String => SHORT,
+                /// Unit in the file.
+                unit: UnitName => OneOf::new(),
+            }
+        }
+    }
+}
+
+record! {
+    /// How one kind of file of readings is written.
+    pub struct ReadingsLayout {
+        /// Name of this layout.
+        name: String => SHORT,
+        /// Patterns of file names, such as "P*.csv".
+        files: Vec<String> => List(SHORT, 1..=100),
+        /// Lines before the line of column headers.
+        skip_lines: u32 => Whole(0..=1000),
+        /// What parts the columns.
+        delimiter: Delimiter => OneOf::new(),
+        /// What stands before the decimals.
+        decimal: Decimal => OneOf::new(),
+        /// Encoding; found out when left out.
+        encoding: Option<FileEncoding> => Maybe(OneOf::new()),
+        /// Header of the time column.
+        time_column: String => SHORT,
+        /// Format of the times, in the conversions of strptime.
+        time_format: String => SHORT,
+        /// Zone of the times: IANA name, or a fixed offset such as +08:00.
+        time_zone: String => SHORT,
+        /// Marks that stand for a missing value; an empty field always does.
+        missing: Vec<String> => List(FREE, 0..=100),
+        /// What each column is, by its header.
+        columns: BTreeMap<String, Column> => ByName(Nested::new()),
+    }
+}

@@ -1,0 +1,178 @@
+//! Units that files of readings are written in, and their exact conversion.
+
+use crate::site::reader::choices;
+
+choices! {
+    /// A unit of a column.
+    pub enum UnitName {
+        /// Pascal.
+        Pa = "Pa",
+        /// Kilopascal.
+        Kpa = "kPa",
+        /// Megapascal.
+        Mpa = "MPa",
+        /// Bar, 100 kPa.
+        Bar = "bar",
+        /// Millibar, 0.1 kPa.
+        Mbar = "mbar",
+        /// Hectopascal, 0.1 kPa.
+        Hpa = "hPa",
+        /// Pound-force per square inch.
+        Psi = "psi",
+        /// Pound-force per square foot.
+        Psf = "psf",
+        /// Kilogram-force per square centimetre.
+        KgfCm2 = "kgf/cm2",
+        /// Conventional metre of water, 9.80665 kPa.
+        MetreWater = "mH2O",
+        /// Conventional foot of water.
+        FootWater = "ftH2O",
+        /// Conventional inch of water.
+        InchWater = "inH2O",
+        /// Conventional millimetre of mercury, 133.322387415 Pa.
+        MillimetreMercury = "mmHg",
+        /// Metre.
+        Metre = "m",
+        /// Decimetre.
+        Decimetre = "dm",
+        /// Centimetre.
+        Centimetre = "cm",
+        /// Millimetre.
+        Millimetre = "mm",
+        /// Foot, 0.3048 m.
+        Foot = "ft",
+        /// Inch, 25.4 mm.
+        Inch = "in",
+        /// Degree Celsius.
+        Celsius = "C",
+        /// Degree Fahrenheit.
+        Fahrenheit = "F",
+        /// Kelvin.
+        Kelvin = "K",
+        /// Raw reading of a gauge.
+        Digits = "digits",
+    }
+}
+
+/// What a unit measures.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Dimension {
+    /// Pressure.
+    Pressure,
+    /// Length.
+    Length,
+    /// Temperature.
+    Temperature,
+    /// A raw reading.
+    Raw,
+}
+
+impl Dimension {
+    /// As it reads in a message.
+    #[must_use]
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Pressure => "a pressure",
+            Self::Length => "a length",
+            Self::Temperature => "a temperature",
+            Self::Raw => "a raw reading",
+        }
+    }
+}
+
+/// A unit as `base = (value * multiply + shift) / divide`, with base kPa, m or degree Celsius.
+/// Two whole numbers instead of one factor keep decimal conversions exact to the last digit
+/// (0.1 and 0.001 are not exact in binary, 10 and 1000 are).
+#[derive(Debug, Clone, Copy, PartialEq)]
+struct Scale {
+    multiply: f64,
+    divide: f64,
+    shift: f64,
+}
+
+const fn scale(multiply: f64, divide: f64) -> Scale {
+    Scale { multiply, divide, shift: 0.0 }
+}
+
+impl UnitName {
+    /// What it measures.
+    #[must_use]
+    pub fn dimension(self) -> Dimension {
+        match self {
+            Self::Pa
+            | Self::Kpa
+            | Self::Mpa
+            | Self::Bar
+            | Self::Mbar
+            | Self::Hpa
+            | Self::Psi
+            | Self::Psf
+            | Self::KgfCm2
+            | Self::MetreWater
+            | Self::FootWater
+            | Self::InchWater
+            | Self::MillimetreMercury => Dimension::Pressure,
+            Self::Metre
+            | Self::Decimetre
+            | Self::Centimetre
+            | Self::Millimetre
+            | Self::Foot
+            | Self::Inch => Dimension::Length,
+            Self::Celsius | Self::Fahrenheit | Self::Kelvin => Dimension::Temperature,
+            Self::Digits => Dimension::Raw,
+        }
+    }
+
+    /// Factors by definition: inch 25.4 mm and pound 0.45359237 kg (1959 agreement), standard
+    /// gravity 9.80665 m/s2, conventional water 1000 kg/m3 and mercury 13595.1 kg/m3 under it.
+    fn scale(self) -> Scale {
+        // lbf/in2 = 0.45359237 * 9.80665 / 0.0254^2 Pa.
+        const PSI_KPA: f64 = 6.894_757_293_168_361;
+        const METRE_WATER_KPA: f64 = 9.806_65;
+        match self {
+            Self::Kpa | Self::Metre | Self::Celsius | Self::Digits => scale(1.0, 1.0),
+            Self::Pa | Self::Millimetre => scale(1.0, 1000.0),
+            Self::Mpa => scale(1000.0, 1.0),
+            Self::Bar => scale(100.0, 1.0),
+            Self::Mbar | Self::Hpa | Self::Decimetre => scale(1.0, 10.0),
+            Self::Psi => scale(PSI_KPA, 1.0),
+            Self::Psf => scale(PSI_KPA, 144.0),
+            Self::KgfCm2 => scale(98.0665, 1.0),
+            Self::MetreWater => scale(METRE_WATER_KPA, 1.0),
+            Self::FootWater => scale(METRE_WATER_KPA * 3048.0, 10_000.0),
+            Self::InchWater => scale(METRE_WATER_KPA * 254.0, 10_000.0),
+            Self::MillimetreMercury => scale(0.133_322_387_415, 1.0),
+            Self::Centimetre => scale(1.0, 100.0),
+            Self::Foot => scale(3048.0, 10_000.0),
+            Self::Inch => scale(254.0, 10_000.0),
+            Self::Fahrenheit => Scale { multiply: 5.0, divide: 9.0, shift: -160.0 },
+            Self::Kelvin => Scale { multiply: 1.0, divide: 1.0, shift: -273.15 },
+        }
+    }
+
+    /// Converts a value of this unit to another of the same dimension; `None` across dimensions.
+    /// The same unit gives the same bits back.
+    #[must_use]
+    pub fn convert(self, value: f64, to: UnitName) -> Option<f64> {
+        if self.dimension() != to.dimension() {
+            return None;
+        }
+        if self == to {
+            return Some(value);
+        }
+        let (from, to) = (self.scale(), to.scale());
+        if from.shift == 0.0 && to.shift == 0.0 {
+            let (up, down) = (from.multiply * to.divide, from.divide * to.multiply);
+            // A common factor is taken out, so that cm to mm is times 10, not times 1000 by 100.
+            return Some(if up >= down && up % down == 0.0 {
+                value * (up / down)
+            } else if down % up == 0.0 {
+                value / (down / up)
+            } else {
+                value * up / down
+            });
+        }
+        let base = (value * from.multiply + from.shift) / from.divide;
+        Some((base * to.divide - to.shift) / to.multiply)
+    }
+}
