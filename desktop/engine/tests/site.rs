@@ -488,12 +488,11 @@ mod arbitrary {
         #[test]
         fn a_damaged_site_file_never_panics(at in 0..GOOD.len(), len in 0usize..40, with in "[\\[\\]{}\",:0-9a-z.-]{0,6}") {
             let end = (at + len).min(GOOD.len());
-            if let (Some(head), Some(tail)) = (GOOD.get(..at), GOOD.get(end..)) {
-                if let Err(problems) = site::parse(&format!("{head}{with}{tail}"), "damaged") {
+            if let (Some(head), Some(tail)) = (GOOD.get(..at), GOOD.get(end..))
+                && let Err(problems) = site::parse(&format!("{head}{with}{tail}"), "damaged") {
                     prop_assert!(!problems.problems.is_empty(), "a refusal gives a reason");
                     let _ = problems.to_string();
                 }
-            }
         }
     }
 }

@@ -12,15 +12,15 @@ use crate::time;
 /// Checks every pair of sections of which both could be read, and notes the others.
 pub(super) fn between_sections(reading: &Reading<'_>, parts: &SiteParts<'_>) {
     note_unread(reading, parts);
-    if let Some(site) = parts.site {
-        if time::zone(&site.time_zone).is_none() {
-            zone_refused(
-                reading,
-                "site.time_zone",
-                &site.time_zone,
-                "an IANA zone name such as \"Asia/Makassar\"",
-            );
-        }
+    if let Some(site) = parts.site
+        && time::zone(&site.time_zone).is_none()
+    {
+        zone_refused(
+            reading,
+            "site.time_zone",
+            &site.time_zone,
+            "an IANA zone name such as \"Asia/Makassar\"",
+        );
     }
     ground::check(reading, parts);
     load::check(reading, parts);

@@ -140,31 +140,25 @@ fn liquids(reading: &Reading<'_>, parts: &SiteParts<'_>) {
         }
     }
     let first_rise = parts.stages.and_then(|stages| stages.first());
-    if let (Some(liquid), Some(stage)) = (liquids.first(), first_rise) {
-        if liquid.from.time_s > stage.start.time_s {
-            earlier(
-                reading,
-                "liquids[0].from",
-                &liquid.from,
-                "the first stage starts",
-                &stage.start,
-            );
-        }
+    if let (Some(liquid), Some(stage)) = (liquids.first(), first_rise)
+        && liquid.from.time_s > stage.start.time_s
+    {
+        earlier(reading, "liquids[0].from", &liquid.from, "the first stage starts", &stage.start);
     }
 }
 
 /// The instants that begin the history.
 fn starts(reading: &Reading<'_>, parts: &SiteParts<'_>) {
     let Some(stages) = parts.stages else { return };
-    if let (Some(since), Some(first)) = (parts.dead_load_since, stages.first()) {
-        if since.time_s > first.start.time_s {
-            earlier(reading, "dead_load_since", since, "the first stage starts", &first.start);
-        }
+    if let (Some(since), Some(first)) = (parts.dead_load_since, stages.first())
+        && since.time_s > first.start.time_s
+    {
+        earlier(reading, "dead_load_since", since, "the first stage starts", &first.start);
     }
-    if let (Some(baseline), Some(last)) = (parts.baseline, stages.last()) {
-        if baseline.time_s > last.hold_until.time_s {
-            earlier(reading, "baseline", baseline, "the last stage is over", &last.hold_until);
-        }
+    if let (Some(baseline), Some(last)) = (parts.baseline, stages.last())
+        && baseline.time_s > last.hold_until.time_s
+    {
+        earlier(reading, "baseline", baseline, "the last stage is over", &last.hold_until);
     }
 }
 
