@@ -49,7 +49,7 @@ fn the_published_schema_comes_from_the_declarations() {
 fn the_schema_states_ranges_and_required_keys() {
     let schema = site::schema();
     let layer = &schema["$defs"]["Layer"];
-    assert_eq!(layer["properties"]["thickness_m"]["minimum"], 0.05);
+    assert_eq!(layer["properties"]["thickness_m"]["minimum"], 0.01);
     assert_eq!(layer["additionalProperties"], false);
     assert!(layer["required"].as_array().unwrap().contains(&"cv_m2_per_year".into()));
     let water = &schema["$defs"]["Water"]["required"];
@@ -81,7 +81,8 @@ fn a_name_changed_to_one_too_long_for_the_core_is_refused() {
 fn a_number_outside_its_range_names_value_range_and_remedy() {
     assert_eq!(
         only("\"thickness_m\": 14.0", "\"thickness_m\": -14.0"),
-        "32: layers[1].thickness_m: found -14.0; allowed: layer thickness from 0.05 to 500 m. Give it in metres."
+        "32: layers[1].thickness_m: found -14.0; allowed: layer thickness from 0.01 to 500 m. \
+         Give thicknesses, not depths, from ground level down."
     );
 }
 
@@ -130,7 +131,7 @@ fn a_misspelt_key_is_one_problem_with_the_key_that_was_meant() {
 fn a_missing_key_is_named_with_what_belongs_there() {
     assert_eq!(
         only("\"poisson_drained\": 0.25,", ""),
-        "30: layers[1].poisson_drained: found nothing; allowed: Poisson's ratio from 0 to 0.499. \
+        "30: layers[1].poisson_drained: found nothing; allowed: Poisson's ratio from 0 to 0.5. \
          Add the key \"poisson_drained\"."
     );
 }
@@ -199,6 +200,37 @@ fn a_submerged_unit_weight_is_noticed() {
     let message =
         only("\"unit_weight_below_water_kn_m3\": 15.8", "\"unit_weight_below_water_kn_m3\": 9.5");
     assert!(message.contains("bulk (saturated) unit weight, not the submerged one"), "{message}");
+}
+
+#[test]
+fn saturated_soil_is_not_lighter_than_the_same_soil_above_water() {
+    let message =
+        only("\"unit_weight_below_water_kn_m3\": 15.8", "\"unit_weight_below_water_kn_m3\": 15.0");
+    assert!(message.contains("not less than the 15.5 kN/m3 above the water table"), "{message}");
+}
+
+#[test]
+fn a_piezometer_must_say_whether_it_sinks_and_is_vented() {
+    let message = only(
+        "\"tip_sinks\": true,\n      \"vented\": false,\n      \"limits\"",
+        "\"tip_sinks\": true,\n      \"limits\"",
+    );
+    assert!(message.contains("no \"vented\" for the piezometer \"P5\""), "{message}");
+    let plate = GOOD.replacen(
+        "\"tip_sinks\": false,\n      \"vented\": true\n    }\n  ],",
+        "\"master\": false\n    }\n  ],",
+        1,
+    );
+    assert_ne!(plate, GOOD);
+    assert!(site::parse(&plate, "site.json").is_ok(), "a plate need not say it");
+}
+
+#[test]
+fn the_demo_site_is_good() {
+    let demo = include_str!("../../../data-demo/site.json");
+    let site =
+        site::parse(demo, "data-demo/site.json").unwrap_or_else(|problems| panic!("{problems}"));
+    assert!(site.site.invented);
 }
 
 #[test]
@@ -457,7 +489,7 @@ fn what_is_not_strict_json_is_refused_with_its_place() {
 fn an_overflowing_number_is_refused() {
     let message = only("\"thickness_m\": 14.0", "\"thickness_m\": 1e999");
     assert!(
-        message.contains("found 1e999; allowed: layer thickness from 0.05 to 500 m"),
+        message.contains("found 1e999; allowed: layer thickness from 0.01 to 500 m"),
         "{message}"
     );
 }

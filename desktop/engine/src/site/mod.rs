@@ -91,10 +91,30 @@ pub fn parse(text: &str, file: &str) -> Result<SiteFile, SiteProblems> {
     };
     let reading = Reading::new(text);
     let site = SiteFile::read_record(&Node::new(&reading, &root, String::new()));
+    if let Some(site) = site.as_ref().filter(|_| reading.is_clean()) {
+        core_checks(&reading, site);
+    }
     let (problems, not_cross_checked) = reading.into_problems();
     match site {
         Some(site) if problems.is_empty() => Ok(site),
         _ => Err(SiteProblems { file: file.to_owned(), problems, not_cross_checked }),
+    }
+}
+
+/// The core has the last word on what it calculates with.
+fn core_checks(reading: &Reading<'_>, site: &SiteFile) {
+    let allowed = "what the calculation takes";
+    let ground = site.ground().map_err(|error| error.to_string());
+    if let Err(reason) = ground.and_then(|ground| ground.check().map_err(|error| error.to_string()))
+    {
+        reading.report("layers", "a ground profile that was refused", allowed, reason);
+    }
+    let tanks = site.tanks().map_err(|error| error.to_string());
+    for (index, tank) in tanks.iter().flatten().enumerate() {
+        if let Err(error) = tank.check() {
+            let path = format!("tanks[{index}]");
+            reading.report(&path, "a tank that was refused", allowed, error.to_string());
+        }
     }
 }
 

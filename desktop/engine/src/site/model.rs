@@ -8,6 +8,7 @@ use super::reader::{
 };
 use crate::units::UnitName;
 use brimstead_core::config::{MAX_LAYERS, MAX_PROFILE_POINTS, MAX_TANKS, NAME_BYTES};
+use brimstead_core::{ground, load};
 use std::collections::BTreeMap;
 
 /// A name that crosses to the core and the loggers.
@@ -83,12 +84,12 @@ record! {
     /// Ground water before loading.
     pub struct Water {
         /// Depth of the water table, m.
-        water_table_m: f64 => Number(&b::WATER_TABLE),
+        water_table_m: f64 => Number(&ground::WATER_TABLE),
         /// Unit weight of the ground water, kN/m3.
-        unit_weight_kn_m3: f64 => Number(&b::WATER_UNIT_WEIGHT),
+        unit_weight_kn_m3: f64 => Number(&ground::WATER_UNIT_WEIGHT),
         /// Measured pore pressure as [depth m, kPa] by rising depth; hydrostatic when left out.
         profile: Option<Vec<(f64, f64)>> =>
-            Maybe(List(Pair(Number(&b::DEPTH), Number(&b::PORE_PRESSURE)), 2..=MAX_PROFILE_POINTS)),
+            Maybe(List(Pair(Number(&b::DEPTH), Number(&ground::WATER_POINT_PRESSURE)), 2..=MAX_PROFILE_POINTS)),
     }
 }
 
@@ -98,35 +99,35 @@ record! {
         /// Name on drawings and in messages.
         name: String => NAME,
         /// Thickness, m.
-        thickness_m: f64 => Number(&b::THICKNESS),
+        thickness_m: f64 => Number(&ground::LAYER_THICKNESS),
         /// Bulk unit weight above the water table, kN/m3.
-        unit_weight_above_water_kn_m3: f64 => Number(&b::UNIT_WEIGHT),
+        unit_weight_above_water_kn_m3: f64 => Number(&ground::UNIT_WEIGHT_ABOVE_WATER),
         /// Bulk (saturated) unit weight below the water table, kN/m3.
-        unit_weight_below_water_kn_m3: f64 => Number(&b::UNIT_WEIGHT),
+        unit_weight_below_water_kn_m3: f64 => Number(&ground::UNIT_WEIGHT_BELOW_WATER),
         /// One-dimensional compressibility.
         compressibility: Compressibility => Nested::new(),
         /// Stress history.
         preconsolidation: Preconsolidation => Nested::new(),
         /// Secondary compression as strain per log10 cycle of time; 0 for none.
-        secondary_ratio: f64 => Number(&b::SECONDARY_RATIO),
+        secondary_ratio: f64 => Number(&ground::SECONDARY_RATIO),
         /// Coefficient of consolidation for vertical flow, m2/year.
         cv_m2_per_year: f64 => Number(&b::CONSOLIDATION_COEFFICIENT),
         /// Coefficient of consolidation for horizontal flow, m2/year.
         ch_m2_per_year: f64 => Number(&b::CONSOLIDATION_COEFFICIENT),
         /// Vertical permeability, m/s.
-        permeability_m_per_s: f64 => Number(&b::PERMEABILITY),
+        permeability_m_per_s: f64 => Number(&ground::PERMEABILITY),
         /// Undrained Young's modulus, kPa.
-        young_undrained_kpa: f64 => Number(&b::YOUNG),
+        young_undrained_kpa: f64 => Number(&ground::YOUNG_MODULUS),
         /// Drained Young's modulus, kPa.
-        young_drained_kpa: f64 => Number(&b::YOUNG),
+        young_drained_kpa: f64 => Number(&ground::YOUNG_MODULUS),
         /// Drained Poisson's ratio.
-        poisson_drained: f64 => Number(&b::POISSON),
+        poisson_drained: f64 => Number(&ground::POISSON_RATIO),
         /// Undrained shear strength at the top of the layer, kPa; 0 for a drained layer.
-        undrained_strength_kpa: f64 => Number(&b::UNDRAINED_STRENGTH),
+        undrained_strength_kpa: f64 => Number(&ground::UNDRAINED_STRENGTH),
         /// Its gradient with depth, kPa/m.
-        undrained_strength_gradient_kpa_per_m: f64 => Number(&b::UNDRAINED_STRENGTH_GRADIENT),
+        undrained_strength_gradient_kpa_per_m: f64 => Number(&ground::STRENGTH_GRADIENT),
         /// Excess pore pressure per kPa of vertical total stress increment.
-        pore_pressure_response: f64 => Number(&b::PORE_PRESSURE_RESPONSE),
+        pore_pressure_response: f64 => Number(&ground::PORE_PRESSURE_RESPONSE),
         /// true for a free-draining layer.
         drained: bool => Flag,
     }
@@ -140,23 +141,23 @@ union! {
             /// By compression and recompression index.
             Index {
                 /// Initial void ratio.
-                void_ratio: f64 => Number(&b::VOID_RATIO),
+                void_ratio: f64 => Number(&ground::VOID_RATIO),
                 /// Compression index Cc.
-                cc: f64 => Number(&b::COMPRESSION_INDEX),
+                cc: f64 => Number(&ground::COMPRESSION_INDEX),
                 /// Recompression index Cr.
-                cr: f64 => Number(&b::RECOMPRESSION_INDEX),
+                cr: f64 => Number(&ground::RECOMPRESSION_INDEX),
             }
             /// By strain per log10 cycle of effective stress.
             Ratio {
                 /// Compression ratio CR = Cc/(1+e0).
-                compression_ratio: f64 => Number(&b::COMPRESSION_RATIO),
+                compression_ratio: f64 => Number(&ground::COMPRESSION_RATIO),
                 /// Recompression ratio RR = Cr/(1+e0).
-                recompression_ratio: f64 => Number(&b::RECOMPRESSION_RATIO),
+                recompression_ratio: f64 => Number(&ground::RECOMPRESSION_RATIO),
             }
             /// By a constant modulus, for sands and stiff layers.
             Modulus {
                 /// Constrained modulus, kPa.
-                constrained_modulus_kpa: f64 => Number(&b::CONSTRAINED_MODULUS),
+                constrained_modulus_kpa: f64 => Number(&ground::CONSTRAINED_MODULUS),
             }
         }
     }
@@ -170,17 +171,17 @@ union! {
             /// By overconsolidation ratio.
             Ocr {
                 /// Overconsolidation ratio.
-                ocr: f64 => Number(&b::OCR),
+                ocr: f64 => Number(&ground::OVERCONSOLIDATION_RATIO),
             }
             /// By pre-overburden pressure.
             Pop {
                 /// Pre-overburden pressure, kPa.
-                pop_kpa: f64 => Number(&b::POP),
+                pop_kpa: f64 => Number(&ground::PRE_OVERBURDEN),
             }
             /// By the pressure itself.
             Value {
                 /// Preconsolidation pressure, constant over the layer, kPa.
-                value_kpa: f64 => Number(&b::PRECONSOLIDATION),
+                value_kpa: f64 => Number(&ground::PRECONSOLIDATION_PRESSURE),
             }
         }
     }
@@ -217,9 +218,9 @@ union! {
             /// An elastic half-space.
             HalfSpace {
                 /// Young's modulus, kPa.
-                young_kpa: f64 => Number(&b::YOUNG),
+                young_kpa: f64 => Number(&ground::YOUNG_MODULUS),
                 /// Poisson's ratio.
-                poisson: f64 => Number(&b::POISSON),
+                poisson: f64 => Number(&ground::POISSON_RATIO),
             }
         }
     }
@@ -267,25 +268,25 @@ record! {
         /// Name on drawings and in messages.
         name: String => NAME,
         /// Axis, east, m.
-        x_m: f64 => Number(&b::COORDINATE),
+        x_m: f64 => Number(&load::COORDINATE),
         /// Axis, north, m.
-        y_m: f64 => Number(&b::COORDINATE),
+        y_m: f64 => Number(&load::COORDINATE),
         /// Diameter, m.
-        diameter_m: f64 => Number(&b::DIAMETER),
+        diameter_m: f64 => Number(&load::TANK_DIAMETER),
         /// Height of the shell, m.
-        shell_height_m: f64 => Number(&b::SHELL_HEIGHT),
+        shell_height_m: f64 => Number(&load::SHELL_HEIGHT),
         /// Depth of the loaded level below ground level, m.
-        loaded_depth_m: f64 => Number(&b::LOADED_DEPTH),
+        loaded_depth_m: f64 => Number(&load::LOADED_DEPTH),
         /// Floor weight, kPa.
-        floor_pressure_kpa: f64 => Number(&b::FLOOR_PRESSURE),
+        floor_pressure_kpa: f64 => Number(&load::PART_PRESSURE),
         /// Foundation pad weight, kPa.
-        pad_pressure_kpa: f64 => Number(&b::PAD_PRESSURE),
+        pad_pressure_kpa: f64 => Number(&load::PART_PRESSURE),
         /// Excavated soil, kPa, given positive and taken off.
-        excavation_relief_kpa: f64 => Number(&b::EXCAVATION_RELIEF),
+        excavation_relief_kpa: f64 => Number(&load::PART_PRESSURE),
         /// Shell with the part of the roof it carries, kN/m.
-        shell_line_load_kn_m: f64 => Number(&b::LINE_LOAD),
+        shell_line_load_kn_m: f64 => Number(&load::LINE_LOAD),
         /// Ring wall or ring pad, kN/m.
-        ring_line_load_kn_m: f64 => Number(&b::LINE_LOAD),
+        ring_line_load_kn_m: f64 => Number(&load::LINE_LOAD),
         /// Constant liquid level of a neighbour, m; not for the tank under test.
         liquid_level_m: Option<f64> => Maybe(Number(&b::LIQUID_LEVEL)),
         /// Stated rate at which the tank can be lowered, m3/h.
@@ -301,7 +302,7 @@ record! {
         /// Name of the liquid.
         name: String => NAME,
         /// Unit weight, kN/m3.
-        unit_weight_kn_m3: f64 => Number(&b::LIQUID_UNIT_WEIGHT),
+        unit_weight_kn_m3: f64 => Number(&load::LIQUID_UNIT_WEIGHT),
     }
 }
 
@@ -385,9 +386,9 @@ record! {
         /// Kind.
         kind: InstrumentKind => OneOf::new(),
         /// Place, east, m.
-        x_m: f64 => Number(&b::COORDINATE),
+        x_m: f64 => Number(&load::COORDINATE),
         /// Place, north, m.
-        y_m: f64 => Number(&b::COORDINATE),
+        y_m: f64 => Number(&load::COORDINATE),
         /// Depth below ground level, m.
         depth_m: f64 => Number(&b::DEPTH),
         /// Unit of its readings.
@@ -400,10 +401,10 @@ record! {
         stale_after_min: f64 => Number(&b::STALE_AFTER),
         /// Instruments that should agree with it.
         neighbours: Vec<String> => List(NAME, 0..=16),
-        /// true when its tip goes down with the ground.
-        tip_sinks: bool => Flag,
-        /// true when it is open to the air pressure.
-        vented: bool => Flag,
+        /// true when its tip goes down with the ground; to be given for a piezometer.
+        tip_sinks: Option<bool> => Maybe(Flag),
+        /// true when it is open to the air pressure; to be given for a piezometer.
+        vented: Option<bool> => Maybe(Flag),
         /// Calibration, when raw digits are read.
         calibration: Option<Calibration> => Maybe(Nested::new()),
         /// true for the level gauge that gives the load, when there are several.
@@ -591,7 +592,7 @@ union! {
             }
             /// Something else that a reduction needs.
             Channel {
-                /// "barometer", or "temperature:" and the id of an instrument.
+                /// "barometer", "temperature:air", or "temperature:" and the id of an instrument.
                 channel: String => SHORT,
                 /// Unit in the file.
                 unit: UnitName => OneOf::new(),

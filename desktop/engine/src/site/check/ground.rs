@@ -1,18 +1,16 @@
 //! Water, layers and drains.
 
-use super::super::bounds::THICKNESS;
 use super::super::model::{Compressibility, Drains, Layer, SiteParts, Water};
 use super::super::reader::Reading;
 use super::unique;
+use brimstead_core::ground::LAYER_THICKNESS;
 
 pub(super) fn check(reading: &Reading<'_>, parts: &SiteParts<'_>) {
     if let Some(layers) = parts.layers {
         unique(reading, "layers", "name", layers.iter().map(|layer| layer.name.as_str()));
         for (index, layer) in layers.iter().enumerate() {
             compressibility(reading, index, layer);
-            if let Some(water) = parts.water {
-                buoyancy(reading, index, layer, water);
-            }
+            saturated_weight(reading, index, layer, parts.water);
         }
         if let (Some(Some(drains)), Some(bottom)) = (parts.drains, bottom(layers)) {
             drains_in_ground(reading, drains, bottom);
@@ -46,19 +44,21 @@ fn compressibility(reading: &Reading<'_>, index: usize, layer: &Layer) {
     }
 }
 
-fn buoyancy(reading: &Reading<'_>, index: usize, layer: &Layer, water: &Water) {
+fn saturated_weight(reading: &Reading<'_>, index: usize, layer: &Layer, water: Option<&Water>) {
     let below = layer.unit_weight_below_water_kn_m3;
-    if below <= water.unit_weight_kn_m3 {
-        let allowed =
-            format!("more than the {} kN/m3 of the ground water", water.unit_weight_kn_m3);
-        let remedy = "Give the bulk (saturated) unit weight, not the submerged one.";
-        reading.report(
-            &format!("layers[{index}].unit_weight_below_water_kn_m3"),
-            below.to_string(),
-            allowed,
-            remedy,
-        );
-    }
+    let above = layer.unit_weight_above_water_kn_m3;
+    let water = water.map_or(0.0, |water| water.unit_weight_kn_m3);
+    let (allowed, remedy) = if below <= water {
+        let allowed = format!("more than the {water} kN/m3 of the ground water");
+        (allowed, "Give the bulk (saturated) unit weight, not the submerged one.")
+    } else if below < above {
+        let allowed = format!("not less than the {above} kN/m3 above the water table");
+        (allowed, "Saturated soil is not lighter than the same soil above water.")
+    } else {
+        return;
+    };
+    let path = format!("layers[{index}].unit_weight_below_water_kn_m3");
+    reading.report(&path, below.to_string(), allowed, remedy);
 }
 
 /// Reports every point whose first number is not above the one before.
@@ -80,7 +80,7 @@ pub(super) fn rising(reading: &Reading<'_>, path: &str, what: &str, points: &[(f
 /// Depth of the base of the lowest layer; `None` when a thickness was refused, so that one slip
 /// does not draw a refusal of everything that stands in the ground.
 pub(super) fn bottom(layers: &[Layer]) -> Option<f64> {
-    layers.iter().map(|layer| THICKNESS.check(layer.thickness_m).ok()).sum()
+    layers.iter().map(|layer| LAYER_THICKNESS.check(layer.thickness_m).ok()).sum()
 }
 
 fn drains_in_ground(reading: &Reading<'_>, drains: &Drains, bottom: f64) {

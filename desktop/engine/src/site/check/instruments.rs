@@ -25,6 +25,7 @@ pub(super) fn check(reading: &Reading<'_>, parts: &SiteParts<'_>) {
         let path = format!("instruments[{index}]");
         range(reading, &path, instrument);
         unit(reading, &path, instrument);
+        open_to_air_and_sinking(reading, &path, instrument);
         neighbours(reading, &path, instrument, &ids);
         if let Some(own) = &instrument.limits {
             limits(reading, &format!("{path}.limits"), own);
@@ -64,6 +65,18 @@ fn unit(reading: &Reading<'_>, path: &str, instrument: &Instrument) {
         let allowed = format!("{} for a {}", words.join(" or "), instrument.kind);
         let remedy = "The unit in the files may differ: it is given with each column.";
         reading.report(&format!("{path}.unit"), quoted(instrument.unit.word()), allowed, remedy);
+    }
+}
+
+fn open_to_air_and_sinking(reading: &Reading<'_>, path: &str, instrument: &Instrument) {
+    if instrument.kind != InstrumentKind::Piezometer {
+        return;
+    }
+    let given = [("tip_sinks", instrument.tip_sinks), ("vented", instrument.vented)];
+    for (key, _) in given.iter().filter(|(_, value)| value.is_none()) {
+        let found = format!("no \"{key}\" for the piezometer \"{}\"", instrument.id);
+        let remedy = "Its readings cannot be reduced to excess pore pressure without it.";
+        reading.report(&format!("{path}.id"), found, format!("\"{key}\": true or false"), remedy);
     }
 }
 
@@ -110,7 +123,7 @@ fn calibration(reading: &Reading<'_>, path: &str, instrument: &Instrument) {
             "Every reading would be 0.",
         );
     }
-    if instrument.vented && calibration.apply_barometer {
+    if instrument.vented == Some(true) && calibration.apply_barometer {
         let found = "true for a vented instrument";
         let allowed = "false, or an instrument that is not vented";
         let remedy =

@@ -1,9 +1,9 @@
 //! Tanks, liquids, stages and the cases of the band.
 
-use super::super::bounds::SHELL_HEIGHT;
 use super::super::model::{SiteParts, Stage, Tank};
 use super::super::reader::{InstantText, Reading};
 use super::{quoted, unique};
+use brimstead_core::load::SHELL_HEIGHT;
 
 pub(super) fn check(reading: &Reading<'_>, parts: &SiteParts<'_>) {
     if let Some(tanks) = parts.tanks {

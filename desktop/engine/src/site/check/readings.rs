@@ -139,13 +139,13 @@ fn unit_refused(reading: &Reading<'_>, path: &str, unit: UnitName, needed: UnitN
 
 fn channel_column(reading: &Reading<'_>, path: &str, channel: &str, unit: UnitName, ids: &[&str]) {
     let needed = match channel.strip_prefix("temperature:") {
-        Some(id) if !ids.contains(&id) => {
+        Some(id) if id != "air" && !ids.contains(&id) => {
             return unknown_instrument(reading, &format!("{path}.channel"), id, ids);
         }
         Some(_) => UnitName::Celsius,
         None if channel == "barometer" => UnitName::Kpa,
         None => {
-            let allowed = "\"barometer\", or \"temperature:\" and the id of an instrument";
+            let allowed = "\"barometer\", \"temperature:air\", or \"temperature:\" and the id of an instrument";
             return reading.report(&format!("{path}.channel"), quoted(channel), allowed, "");
         }
     };

@@ -56,6 +56,11 @@ impl<'t> Reading<'t> {
         self.report_at(offset, path, found.into(), allowed.into(), remedy.into());
     }
 
+    /// Whether no problem has been found so far.
+    pub(crate) fn is_clean(&self) -> bool {
+        self.problems.borrow().is_empty()
+    }
+
     /// Notes sections that could not be checked against the others.
     pub(crate) fn note_not_cross_checked<'n>(&self, sections: impl Iterator<Item = &'n str>) {
         self.not_cross_checked.borrow_mut().extend(sections.map(str::to_owned));
