@@ -1,0 +1,83 @@
+//! Reads the reference tables of the project.
+
+use std::collections::HashMap;
+use std::path::Path;
+
+/// One row by column heading.
+pub struct Row {
+    cells: HashMap<String, String>,
+}
+
+impl Row {
+    pub fn text(&self, column: &str) -> &str {
+        self.cells
+            .get(column)
+            .unwrap_or_else(|| panic!("no column {column}"))
+    }
+
+    pub fn number(&self, column: &str) -> f64 {
+        let text = self.text(column);
+        text.parse()
+            .unwrap_or_else(|_| panic!("{column} holds {text:?}, not a number"))
+    }
+
+    /// `None` where the cell is empty.
+    pub fn optional(&self, column: &str) -> Option<f64> {
+        (!self.text(column).is_empty()).then(|| self.number(column))
+    }
+}
+
+/// All rows of `tests/reference/elastic/<name>`.
+pub fn elastic(name: &str) -> Vec<Row> {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR"))
+        .join("../tests/reference/elastic")
+        .join(name);
+    let mut reader = csv::Reader::from_path(&path).unwrap_or_else(|e| panic!("{path:?}: {e}"));
+    let headings = reader.headers().expect("headings").clone();
+    let rows: Vec<Row> = reader
+        .records()
+        .map(|record| {
+            let record = record.expect("a readable row");
+            let cells = headings
+                .iter()
+                .zip(&record)
+                .map(|(h, c)| (h.to_owned(), c.to_owned()));
+            Row {
+                cells: cells.collect(),
+            }
+        })
+        .collect();
+    assert!(!rows.is_empty(), "{path:?} holds no rows");
+    rows
+}
+
+/// The largest difference over a table, with the place it was found at.
+#[derive(Default)]
+pub struct Worst {
+    difference: f64,
+    place: String,
+}
+
+impl Worst {
+    pub fn take(&mut self, got: f64, want: f64, place: impl Fn() -> String) {
+        let difference = (got - want).abs();
+        // Written so that NaN is the worst of all.
+        if !(difference <= self.difference) {
+            self.difference = difference;
+            self.place = format!("{}: got {got:e}, want {want:e}", place());
+        }
+    }
+
+    pub fn assert_below(&self, tolerance: f64) {
+        assert!(
+            self.difference <= tolerance,
+            "{:e} > {tolerance:e} at {}",
+            self.difference,
+            self.place
+        );
+        println!(
+            "largest difference {:.1e} at {}",
+            self.difference, self.place
+        );
+    }
+}
