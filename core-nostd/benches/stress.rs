@@ -3,7 +3,7 @@
 //!
 //! `cargo bench -p brimstead-core --bench stress`
 
-#![allow(clippy::expect_used, clippy::integer_division)]
+#![allow(clippy::expect_used, clippy::integer_division, reason = "a bench may panic")]
 
 use brimstead_core::load::PlanPosition;
 use brimstead_core::math::quadrature::GaussLegendre;
@@ -20,10 +20,8 @@ fn main() {
 
 /// A section from below the centre to 2.5 radii beside it and to 2.5 radii deep.
 fn section() -> Vec<AxisPoint> {
-    let at = |i: usize| AxisPoint {
-        r_m: 0.2 * (i % 128) as f64,
-        z_m: 0.1 + 0.4 * (i / 128) as f64,
-    };
+    let at =
+        |i: usize| AxisPoint { r_m: 0.2 * (i % 128) as f64, z_m: 0.1 + 0.4 * (i / 128) as f64 };
     (0..POINTS).map(at).collect()
 }
 
@@ -61,23 +59,16 @@ mod disc_tensor {
     #[divan::bench]
     fn numerical_quadrature(bencher: Bencher) {
         let rule = GaussLegendre::<16>::new();
-        let points: Vec<AxisPoint> = section()
-            .into_iter()
-            .filter(|p| p.z_m >= 5.0)
-            .step_by(16)
-            .collect();
+        let points: Vec<AxisPoint> =
+            section().into_iter().filter(|p| p.z_m >= 5.0).step_by(16).collect();
         let disc = disc();
         for p in &points {
             let (exact, [sigma_z, ..]) = (disc.stress_at(p.r_m, p.z_m), by_quadrature(&rule, *p));
             assert!((exact.expect("in range").sigma_z_kpa / 150.0 - sigma_z).abs() < 1e-9);
         }
-        bencher
-            .counter(ItemsCount::new(points.len()))
-            .bench_local(|| {
-                black_box(&points)
-                    .iter()
-                    .fold(0.0, |sum, p| sum + by_quadrature(&rule, *p)[0])
-            });
+        bencher.counter(ItemsCount::new(points.len())).bench_local(|| {
+            black_box(&points).iter().fold(0.0, |sum, p| sum + by_quadrature(&rule, *p)[0])
+        });
     }
 
     fn by_quadrature(rule: &GaussLegendre<16>, point: AxisPoint) -> [f64; 4] {
@@ -126,11 +117,7 @@ fn site_tensor_batch_of_six_loads(bencher: Bencher) {
                 .map(|load| load.expect("a valid place"))
         })
         .collect();
-    let at = |p: AxisPoint| SitePoint {
-        x_m: p.r_m - 3.03,
-        y_m: 1.7,
-        z_m: p.z_m,
-    };
+    let at = |p: AxisPoint| SitePoint { x_m: p.r_m - 3.03, y_m: 1.7, z_m: p.z_m };
     let points: Vec<SitePoint> = section().into_iter().map(at).collect();
     let mut out = vec![CartesianStress::default(); POINTS];
     bencher
@@ -142,11 +129,7 @@ fn site_tensor_batch_of_six_loads(bencher: Bencher) {
 fn principal_values(bencher: Bencher) {
     let loads =
         [PlacedLoad::new(PlanPosition { x_m: 0.0, y_m: 0.0 }, disc()).expect("a valid place")];
-    let at = |p: AxisPoint| SitePoint {
-        x_m: p.r_m,
-        y_m: 1.7,
-        z_m: p.z_m,
-    };
+    let at = |p: AxisPoint| SitePoint { x_m: p.r_m, y_m: 1.7, z_m: p.z_m };
     let points: Vec<SitePoint> = section().into_iter().map(at).collect();
     let mut stresses = vec![CartesianStress::default(); POINTS];
     superposition::stress_into(&loads, &points, &mut stresses).expect("points in range");

@@ -60,21 +60,9 @@ pub fn complete(kc: f64) -> Result<Complete, OutOfRange> {
     let kc = COMPLEMENTARY_MODULUS.check(kc)?;
     let k2 = (1.0 - kc) * (1.0 + kc);
     let one = Lanes([1.0]);
-    let means = Means::new(
-        Lanes([kc]),
-        Lanes([k2]),
-        Third {
-            a: one,
-            b: one,
-            p: one,
-        },
-    );
+    let means = Means::new(Lanes([kc]), Lanes([k2]), Third { a: one, b: one, p: one });
     let (k, sum) = (FRAC_PI_2 * means.first.value(), means.sum.value());
-    Ok(Complete {
-        k,
-        e: k * (1.0 - 0.5 * k2 - sum),
-        sum,
-    })
+    Ok(Complete { k, e: k * (1.0 - 0.5 * k2 - sum), sum })
 }
 
 /// Bulirsch's general complete integral, p > 0:
@@ -85,11 +73,7 @@ pub fn complete(kc: f64) -> Result<Complete, OutOfRange> {
 pub fn cel(kc: f64, p: f64, a: f64, b: f64) -> Result<f64, OutOfRange> {
     let kc = COMPLEMENTARY_MODULUS.check(kc)?;
     let p = libm::sqrt(CHARACTERISTIC.check(p)?);
-    let third = Third {
-        a: Lanes([a]),
-        b: Lanes([b / p]),
-        p: Lanes([p]),
-    };
+    let third = Third { a: Lanes([a]), b: Lanes([b / p]), p: Lanes([p]) };
     let k2 = Lanes([(1.0 - kc) * (1.0 + kc)]);
     Ok(FRAC_PI_2 * Means::new(Lanes([kc]), k2, third).third.value())
 }
@@ -117,11 +101,7 @@ impl<const N: usize> Means<N> {
     /// `k2 = 1 - kc^2` is given apart, because the caller knows it without subtraction.
     #[inline(always)]
     pub(crate) fn new(kc: Lanes<N>, k2: Lanes<N>, third: Third<N>) -> Self {
-        let Third {
-            mut a,
-            mut b,
-            mut p,
-        } = third;
+        let Third { mut a, mut b, mut p } = third;
         let (mut m, mut kc, mut e) = (Lanes::splat(1.0), kc, kc);
         let mut sum = Lanes::splat(0.0);
         // 2^j c_j; the first without cancellation, since every later one is small beside it.
@@ -138,13 +118,8 @@ impl<const N: usize> Means<N> {
             m = kc + m;
             weight *= 0.5;
             scale *= 2.0;
-            let open = m_before.zip(kc, |g, kc| {
-                if (g - kc).abs() <= g * CLOSE {
-                    0.0
-                } else {
-                    1.0
-                }
-            });
+            let open =
+                m_before.zip(kc, |g, kc| if (g - kc).abs() <= g * CLOSE { 0.0 } else { 1.0 });
             if open.sum() == 0.0 {
                 break;
             }
@@ -152,11 +127,7 @@ impl<const N: usize> Means<N> {
             e = kc * m;
             difference = m - kc;
         }
-        Self {
-            first: scale / m,
-            sum,
-            third: (b + a * m) / (m * (m + p)),
-        }
+        Self { first: scale / m, sum, third: (b + a * m) / (m * (m + p)) }
     }
 }
 
@@ -197,16 +168,8 @@ mod tests {
     fn cel_holds_the_other_kinds() {
         let kc = 0.3;
         let integrals = complete(kc).unwrap();
-        assert_relative_eq!(
-            cel(kc, 1.0, 1.0, 1.0).unwrap(),
-            integrals.k,
-            max_relative = 1e-15
-        );
-        assert_relative_eq!(
-            cel(kc, 1.0, 1.0, kc * kc).unwrap(),
-            integrals.e,
-            max_relative = 1e-15
-        );
+        assert_relative_eq!(cel(kc, 1.0, 1.0, 1.0).unwrap(), integrals.k, max_relative = 1e-15);
+        assert_relative_eq!(cel(kc, 1.0, 1.0, kc * kc).unwrap(), integrals.e, max_relative = 1e-15);
         // At kc = 1 the integral is elementary: (pi/2) (a sqrt p + b) / (sqrt p (1 + sqrt p)).
         assert_relative_eq!(
             cel(1.0, 4.0, 3.0, 5.0).unwrap(),
@@ -218,10 +181,8 @@ mod tests {
     #[test]
     fn legendre_relation_joins_both_kinds() {
         for kc in [0.1, 0.4, 0.7, 0.95] {
-            let (one, other) = (
-                complete(kc).unwrap(),
-                complete(libm::sqrt((1.0 - kc) * (1.0 + kc))).unwrap(),
-            );
+            let (one, other) =
+                (complete(kc).unwrap(), complete(libm::sqrt((1.0 - kc) * (1.0 + kc))).unwrap());
             let left = one.e * other.k + other.e * one.k - one.k * other.k;
             assert_relative_eq!(left, FRAC_PI_2, max_relative = 4e-15);
         }

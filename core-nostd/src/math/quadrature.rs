@@ -14,10 +14,7 @@ impl<const N: usize> GaussLegendre<N> {
     /// Tricomi's starting values (DLMF 3.5(v), 18.16(ii)); error of a few 1e-16 for N up to 64.
     #[must_use]
     pub fn new() -> Self {
-        let mut rule = Self {
-            nodes: [0.0; N],
-            weights: [0.0; N],
-        };
+        let mut rule = Self { nodes: [0.0; N], weights: [0.0; N] };
         let count = N as f64;
         for (index, (node, weight)) in rule.nodes.iter_mut().zip(&mut rule.weights).enumerate() {
             // Quadratic convergence from an error below 1e-3: six steps are more than enough.
@@ -36,10 +33,7 @@ impl<const N: usize> GaussLegendre<N> {
     /// Nodes and weights mapped to the interval from `a` to `b`.
     pub fn on(&self, a: f64, b: f64) -> impl Iterator<Item = (f64, f64)> + '_ {
         let (half, middle) = (0.5 * (b - a), 0.5 * (a + b));
-        self.nodes
-            .iter()
-            .zip(&self.weights)
-            .map(move |(x, w)| (middle + half * x, half * w))
+        self.nodes.iter().zip(&self.weights).map(move |(x, w)| (middle + half * x, half * w))
     }
 
     /// Integral of `f` from `a` to `b`.
@@ -63,10 +57,7 @@ fn legendre(degree: usize, x: f64) -> (f64, f64) {
         before = value;
         value = next;
     }
-    (
-        value,
-        degree as f64 * (x * value - before) / ((x - 1.0) * (x + 1.0)),
-    )
+    (value, degree as f64 * (x * value - before) / ((x - 1.0) * (x + 1.0)))
 }
 
 #[cfg(test)]
@@ -94,9 +85,6 @@ mod tests {
             max_relative = 1e-14
         );
         let beyond = rule.integrate(0.0, 2.0, |x| libm::pow(x, 8.0));
-        assert!(
-            (beyond - 512.0 / 9.0).abs() > 1e-3,
-            "degree 8 is beyond four points"
-        );
+        assert!((beyond - 512.0 / 9.0).abs() > 1e-3, "degree 8 is beyond four points");
     }
 }

@@ -29,10 +29,7 @@ impl fmt::Display for RootError {
                 "no change of sign between the ends ({at_low} and {at_high}); widen the interval"
             ),
             Self::NotConverged { steps, best } => {
-                write!(
-                    f,
-                    "no root to tolerance after {steps} steps; best estimate {best}"
-                )
+                write!(f, "no root to tolerance after {steps} steps; best estimate {best}")
             }
         }
     }
@@ -62,10 +59,7 @@ pub fn brent(
     // Written so that NaN fails.
     let bracketed = (fa <= 0.0 && fb >= 0.0) || (fa >= 0.0 && fb <= 0.0);
     if !bracketed {
-        return Err(RootError::NotBracketed {
-            at_low: fa,
-            at_high: fb,
-        });
+        return Err(RootError::NotBracketed { at_low: fa, at_high: fb });
     }
     let (mut c, mut fc) = (a, fa);
     let mut step = b - a;
@@ -98,17 +92,10 @@ pub fn brent(
             step_before = middle;
         }
         (a, fa) = (b, fb);
-        b += if step.abs() > reach {
-            step
-        } else {
-            libm::copysign(reach, middle)
-        };
+        b += if step.abs() > reach { step } else { libm::copysign(reach, middle) };
         fb = f(b);
     }
-    Err(RootError::NotConverged {
-        steps: MAX_STEPS,
-        best: b,
-    })
+    Err(RootError::NotConverged { steps: MAX_STEPS, best: b })
 }
 
 /// Step from `b` to the root of the parabola (or line, when two points coincide).
@@ -159,18 +146,12 @@ mod tests {
             libm::exp(-x) - 0.1
         })
         .unwrap();
-        assert!(
-            calls < 20,
-            "bisection alone would take more than 40, this took {calls}"
-        );
+        assert!(calls < 20, "bisection alone would take more than 40, this took {calls}");
     }
 
     #[test]
     fn no_change_of_sign_is_an_error() {
-        assert!(matches!(
-            brent(1.0, 2.0, 1e-9, |x| x),
-            Err(RootError::NotBracketed { .. })
-        ));
+        assert!(matches!(brent(1.0, 2.0, 1e-9, |x| x), Err(RootError::NotBracketed { .. })));
         assert!(matches!(
             brent(-1.0, 2.0, 1e-9, |_| f64::NAN),
             Err(RootError::NotBracketed { .. })

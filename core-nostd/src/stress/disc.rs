@@ -123,20 +123,12 @@ impl SurfaceLoad for Disc {
             "",
             &[
                 by.step_a(),
-                (
-                    "function B",
-                    by.b,
-                    "B = zeta int m J1(m) J0(m rho) exp(-m zeta) dm",
-                ),
+                ("function B", by.b, "B = zeta int m J1(m) J0(m rho) exp(-m zeta) dm"),
                 by.step_d(),
                 ("function C", by.c, "C = D - B"),
                 by.step_e(),
                 ("function F", by.f, "F = A - E"),
-                (
-                    "function G",
-                    by.g,
-                    "G = zeta int m J1(m) J1(m rho) exp(-m zeta) dm",
-                ),
+                ("function G", by.g, "G = zeta int m J1(m) J1(m rho) exp(-m zeta) dm"),
             ],
             place,
         );
@@ -154,11 +146,7 @@ impl SurfaceLoad for Disc {
         trail.steps(
             "kPa",
             &[
-                (
-                    "vertical stress increment",
-                    result.sigma_z_kpa,
-                    "sigma_z = q (A + B)",
-                ),
+                ("vertical stress increment", result.sigma_z_kpa, "sigma_z = q (A + B)"),
                 (
                     "radial stress increment",
                     result.sigma_r_kpa,
@@ -185,11 +173,7 @@ impl SurfaceLoad for Disc {
     ) {
         let by = Functions::new(by);
         let (rho, zeta) = (at.rho.value(), at.zeta.value());
-        let h = (
-            "function H",
-            by.h,
-            "H = 2 int J1(m) J0(m rho) exp(-m zeta) / m dm",
-        );
+        let h = ("function H", by.h, "H = 2 int J1(m) J0(m rho) exp(-m zeta) / m dm");
         trail.steps(
             "",
             &[by.step_a(), by.step_d(), by.step_e(), h],
@@ -210,11 +194,7 @@ impl SurfaceLoad for Disc {
         trail.steps(
             "m",
             &[
-                (
-                    "settlement",
-                    result.settlement_m,
-                    "w = q R (1 + nu)/Es (zeta A + (1 - nu) H)",
-                ),
+                ("settlement", result.settlement_m, "w = q R (1 + nu)/Es (zeta A + (1 - nu) H)"),
                 (
                     "radial displacement, outwards",
                     result.radial_m,
@@ -243,39 +223,18 @@ impl Functions {
     fn new(by: &DiscIntegrals<1>) -> Self {
         let (a, b, d) = (by.s0.value(), by.zeta_s1.value(), by.zeta_q0.value());
         let e = by.qm1.value();
-        Self {
-            a,
-            b,
-            c: d - b,
-            d,
-            e,
-            f: a - e,
-            g: by.zeta_t1.value(),
-            h: 2.0 * by.sm1.value(),
-        }
+        Self { a, b, c: d - b, d, e, f: a - e, g: by.zeta_t1.value(), h: 2.0 * by.sm1.value() }
     }
 
     fn step_a(&self) -> (&'static str, f64, &'static str) {
-        (
-            "function A",
-            self.a,
-            "A = int J1(m) J0(m rho) exp(-m zeta) dm",
-        )
+        ("function A", self.a, "A = int J1(m) J0(m rho) exp(-m zeta) dm")
     }
 
     fn step_d(&self) -> (&'static str, f64, &'static str) {
-        (
-            "function D",
-            self.d,
-            "D = (zeta/rho) int J1(m) J1(m rho) exp(-m zeta) dm",
-        )
+        ("function D", self.d, "D = (zeta/rho) int J1(m) J1(m rho) exp(-m zeta) dm")
     }
 
     fn step_e(&self) -> (&'static str, f64, &'static str) {
-        (
-            "function E",
-            self.e,
-            "E = (1/rho) int J1(m) J1(m rho) exp(-m zeta) / m dm",
-        )
+        ("function E", self.e, "E = (1/rho) int J1(m) J1(m rho) exp(-m zeta) / m dm")
     }
 }

@@ -68,19 +68,14 @@ impl<const N: usize> Geometry<N> {
     /// On the edge of the load at its level.
     #[inline(always)]
     pub(crate) fn on_rim(&self) -> Lanes<N> {
-        self.zeta.zip(self.edge, |zeta, edge| {
-            if zeta == 0.0 && edge == 0.0 { 1.0 } else { 0.0 }
-        })
+        self.zeta.zip(self.edge, |zeta, edge| if zeta == 0.0 && edge == 0.0 { 1.0 } else { 0.0 })
     }
 
     /// Where the trapezoid is exact: modulus squared at most 0.4.
     #[inline(always)]
     fn near_axis_or_far(&self) -> Lanes<N> {
         let distance = 1.0 + self.rho.squared() + self.zeta.squared();
-        distance.zip(
-            self.rho,
-            |distance, rho| if distance >= 8.0 * rho { 1.0 } else { 0.0 },
-        )
+        distance.zip(self.rho, |distance, rho| if distance >= 8.0 * rho { 1.0 } else { 0.0 })
     }
 }
 
@@ -195,15 +190,7 @@ impl<const N: usize> DiscIntegrals<N> {
     #[inline(always)]
     fn elliptic(at: &Geometry<N>) -> Self {
         let by = EllipticSet::new(at);
-        let EllipticSet {
-            sum_distance,
-            a_inverse,
-            k2,
-            kc2,
-            means,
-            inside,
-            ..
-        } = by;
+        let EllipticSet { sum_distance, a_inverse, k2, kc2, means, inside, .. } = by;
         let (a_cube, sum) = (a_inverse.squared() * a_inverse, means.sum);
         let (k2_inverse, kc2_inverse) = (k2.recip(), kc2.recip());
         let sum_k2 = sum * k2_inverse;
@@ -261,14 +248,7 @@ impl<const N: usize> EllipticSet<N> {
             p: gamma.map(|gamma| if gamma == 0.0 { 1.0 } else { gamma.abs() }),
         };
         let means = Means::new(kc2.sqrt(), k2, third);
-        Self {
-            sum_distance,
-            a_inverse,
-            k2,
-            kc2,
-            means,
-            inside: at.inside(),
-        }
+        Self { sum_distance, a_inverse, k2, kc2, means, inside: at.inside() }
     }
 
     /// `2 zeta cel / (pi A (1 + rho))`, the part of `s0` that the depth takes away.
@@ -346,32 +326,15 @@ impl<const N: usize> RingIntegrals<N> {
         }
         // Inside and shallow, the first form would leave the rounding of terms of order 1 in a
         // value that vanishes like the depth.
-        let shallow = rho.zip(
-            zeta,
-            |rho, zeta| if rho < 1.0 && zeta < 0.5 { 1.0 } else { 0.0 },
-        );
+        let shallow = rho.zip(zeta, |rho, zeta| if rho < 1.0 && zeta < 0.5 { 1.0 } else { 0.0 });
         let v0_rho = (zeta * v0_shallow).or(v0_deep, shallow);
-        Self {
-            u0,
-            n3,
-            n5,
-            v0_rho,
-            v1_rho,
-            v2_rho: 3.0 * zeta * v2,
-        }
+        Self { u0, n3, n5, v0_rho, v1_rho, v2_rho: 3.0 * zeta * v2 }
     }
 
     #[inline(always)]
     fn elliptic(at: &Geometry<N>) -> Self {
         let by = EllipticSet::new(at);
-        let EllipticSet {
-            sum_distance,
-            a_inverse,
-            k2,
-            kc2,
-            ref means,
-            ..
-        } = by;
+        let EllipticSet { sum_distance, a_inverse, k2, kc2, ref means, .. } = by;
         let u0 = means.first * a_inverse;
         let second = second(means, k2);
         let (a_inverse2, kc2_inverse) = (a_inverse.squared(), kc2.recip());

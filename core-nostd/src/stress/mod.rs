@@ -144,10 +144,7 @@ impl fmt::Display for StressError {
                  settlement have no finite value; ask for a point below or beside it"
             ),
             Self::LengthsDiffer { points, results } => {
-                write!(
-                    f,
-                    "{points} points were given with room for {results} results"
-                )
+                write!(f, "{points} points were given with room for {results} results")
             }
             Self::PoissonDiffers { first, other } => write!(
                 f,

@@ -129,11 +129,7 @@ impl SurfaceLoad for Ring {
         trail.steps(
             "kPa",
             &[
-                (
-                    "vertical stress increment",
-                    result.sigma_z_kpa,
-                    "sigma_z = (p/R) 3 zeta^3 N5",
-                ),
+                ("vertical stress increment", result.sigma_z_kpa, "sigma_z = (p/R) 3 zeta^3 N5"),
                 (
                     "radial stress increment",
                     result.sigma_r_kpa,
@@ -144,11 +140,7 @@ impl SurfaceLoad for Ring {
                     result.sigma_theta_kpa,
                     "sigma_theta = (p/R) (2 nu zeta N3 + (1 - 2 nu) V0 - zeta V1)",
                 ),
-                (
-                    "shear stress increment",
-                    result.tau_rz_kpa,
-                    "tau_rz = (p/R) rho zeta V2",
-                ),
+                ("shear stress increment", result.tau_rz_kpa, "tau_rz = (p/R) rho zeta V2"),
             ],
             inputs,
         );
@@ -193,21 +185,9 @@ fn write_integrals(at: &Geometry<1>, by: &RingIntegrals<1>, trail: &mut Trail<'_
     trail.steps(
         "",
         &[
-            (
-                "mean inverse distance",
-                by.u0.value(),
-                "N1 = mean around the ring of R/s",
-            ),
-            (
-                "mean inverse cube",
-                by.n3.value(),
-                "N3 = mean around the ring of (R/s)^3",
-            ),
-            (
-                "mean inverse fifth power",
-                by.n5.value(),
-                "N5 = mean around the ring of (R/s)^5",
-            ),
+            ("mean inverse distance", by.u0.value(), "N1 = mean around the ring of R/s"),
+            ("mean inverse cube", by.n3.value(), "N3 = mean around the ring of (R/s)^3"),
+            ("mean inverse fifth power", by.n5.value(), "N5 = mean around the ring of (R/s)^5"),
             (
                 "horizontal part",
                 by.v0_rho.value(),

@@ -55,21 +55,14 @@ impl PlacedLoad {
     pub fn new(axis: PlanPosition, load: impl Into<Load>) -> Result<Self, StressError> {
         PLAN_COORDINATE.check(axis.x_m)?;
         PLAN_COORDINATE.check(axis.y_m)?;
-        Ok(Self {
-            axis,
-            load: load.into(),
-        })
+        Ok(Self { axis, load: load.into() })
     }
 
     /// Distance from the axis and the direction to the point (cosine, sine).
     fn polar(&self, point: SitePoint) -> (f64, f64, f64) {
         let (x, y) = (point.x_m - self.axis.x_m, point.y_m - self.axis.y_m);
         let r = libm::hypot(x, y);
-        if r > 0.0 {
-            (r, x / r, y / r)
-        } else {
-            (0.0, 1.0, 0.0)
-        }
+        if r > 0.0 { (r, x / r, y / r) } else { (0.0, 1.0, 0.0) }
     }
 }
 
@@ -183,10 +176,7 @@ pub fn stress_into(
     out: &mut [CartesianStress],
 ) -> Result<(), StressError> {
     if points.len() != out.len() {
-        return Err(StressError::LengthsDiffer {
-            points: points.len(),
-            results: out.len(),
-        });
+        return Err(StressError::LengthsDiffer { points: points.len(), results: out.len() });
     }
     let mut same = SamePoisson::default();
     for placed in loads {
@@ -262,22 +252,14 @@ impl SamePoisson {
     fn take(&mut self, placed: &PlacedLoad) -> Result<(), StressError> {
         let other = placed.load.poisson();
         let first = *self.first.get_or_insert(other);
-        if first == other {
-            Ok(())
-        } else {
-            Err(StressError::PoissonDiffers { first, other })
-        }
+        if first == other { Ok(()) } else { Err(StressError::PoissonDiffers { first, other }) }
     }
 }
 
 fn write_sum(sum: &CartesianStress, working: &mut impl Working) {
     let principal = sum.principal();
     for (name, value, formula) in [
-        (
-            "vertical stress increment of all loads",
-            sum.sigma_z_kpa,
-            "sum of sigma_z",
-        ),
+        ("vertical stress increment of all loads", sum.sigma_z_kpa, "sum of sigma_z"),
         (
             "stress increment along x of all loads",
             sum.sigma_x_kpa,
@@ -288,36 +270,13 @@ fn write_sum(sum: &CartesianStress, working: &mut impl Working) {
             sum.sigma_y_kpa,
             "sum of sigma_r sin^2 + sigma_theta cos^2",
         ),
-        (
-            "shear xy of all loads",
-            sum.tau_xy_kpa,
-            "sum of (sigma_r - sigma_theta) cos sin",
-        ),
+        ("shear xy of all loads", sum.tau_xy_kpa, "sum of (sigma_r - sigma_theta) cos sin"),
         ("shear xz of all loads", sum.tau_xz_kpa, "sum of tau_rz cos"),
         ("shear yz of all loads", sum.tau_yz_kpa, "sum of tau_rz sin"),
-        (
-            "major principal increment",
-            principal.sigma_1_kpa,
-            "largest eigenvalue",
-        ),
-        (
-            "intermediate principal increment",
-            principal.sigma_2_kpa,
-            "middle eigenvalue",
-        ),
-        (
-            "minor principal increment",
-            principal.sigma_3_kpa,
-            "smallest eigenvalue",
-        ),
+        ("major principal increment", principal.sigma_1_kpa, "largest eigenvalue"),
+        ("intermediate principal increment", principal.sigma_2_kpa, "middle eigenvalue"),
+        ("minor principal increment", principal.sigma_3_kpa, "smallest eigenvalue"),
     ] {
-        working.step(Step {
-            name,
-            value,
-            unit: "kPa",
-            formula,
-            inputs: &[],
-            source: "",
-        });
+        working.step(Step { name, value, unit: "kPa", formula, inputs: &[], source: "" });
     }
 }

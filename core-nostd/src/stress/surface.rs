@@ -141,14 +141,7 @@ impl<'a, W: Working> Trail<'a, W> {
         (name, value, formula): (&str, f64, &'static str),
         inputs: Inputs<'_>,
     ) {
-        self.working.step(Step {
-            name,
-            value,
-            unit,
-            formula,
-            inputs,
-            source: self.source,
-        });
+        self.working.step(Step { name, value, unit, formula, inputs, source: self.source });
         self.source = "";
     }
 
@@ -173,11 +166,7 @@ impl<'a, W: Working> Trail<'a, W> {
             ("distance from the axis over radius", rho, "rho = r/R"),
             &[("r", r), ("R", radius_m)],
         );
-        self.step(
-            "",
-            ("depth over radius", zeta, "zeta = z/R"),
-            &[("z", z), ("R", radius_m)],
-        );
+        self.step("", ("depth over radius", zeta, "zeta = z/R"), &[("z", z), ("R", radius_m)]);
     }
 }
 
@@ -187,9 +176,7 @@ pub(super) fn check_rim<const N: usize>(
     at: &Geometry<N>,
 ) -> Result<(), StressError> {
     if !load.has_value_on_rim() && at.on_rim().sum() > 0.0 {
-        return Err(StressError::OnLineLoad {
-            radius_m: load.radius_m(),
-        });
+        return Err(StressError::OnLineLoad { radius_m: load.radius_m() });
     }
     Ok(())
 }
@@ -234,10 +221,7 @@ pub(super) fn displacement_at_with<L: SurfaceLoad>(
     let at = geometry_at(load, r_m, z_m)?;
     let by = load.integrals(&at);
     let [settlement_m, radial_m] = load.displacements(young_kpa, &at, &by).map(Lanes::value);
-    let result = Displacement {
-        settlement_m,
-        radial_m,
-    };
+    let result = Displacement { settlement_m, radial_m };
     if working.wanted() {
         let mut trail = Trail::new(working, L::SOURCE);
         trail.geometry(&at, load.radius_m());
@@ -252,10 +236,7 @@ pub(super) fn stress_into(
     out: &mut [AxisymmetricStress],
 ) -> Result<(), StressError> {
     if points.len() != out.len() {
-        return Err(StressError::LengthsDiffer {
-            points: points.len(),
-            results: out.len(),
-        });
+        return Err(StressError::LengthsDiffer { points: points.len(), results: out.len() });
     }
     for (index, point) in points.iter().enumerate() {
         point.check(Some(index))?;

@@ -94,32 +94,14 @@ impl CartesianStress {
     #[must_use]
     pub fn principal(&self) -> Principal {
         let mean = self.mean_kpa();
-        let (x, y, z) = (
-            self.sigma_x_kpa - mean,
-            self.sigma_y_kpa - mean,
-            self.sigma_z_kpa - mean,
-        );
+        let (x, y, z) = (self.sigma_x_kpa - mean, self.sigma_y_kpa - mean, self.sigma_z_kpa - mean);
         let (xy, xz, yz) = (self.tau_xy_kpa, self.tau_xz_kpa, self.tau_yz_kpa);
-        let largest = [x, y, z, xy, xz, yz]
-            .iter()
-            .fold(0.0, |big: f64, v| big.max(v.abs()));
+        let largest = [x, y, z, xy, xz, yz].iter().fold(0.0, |big: f64, v| big.max(v.abs()));
         if largest == 0.0 {
-            return Principal {
-                sigma_1_kpa: mean,
-                sigma_2_kpa: mean,
-                sigma_3_kpa: mean,
-            };
+            return Principal { sigma_1_kpa: mean, sigma_2_kpa: mean, sigma_3_kpa: mean };
         }
         // Scaled, so that no power of a tiny stress underflows.
-        let deviator = Symmetric {
-            x,
-            y,
-            z,
-            xy,
-            xz,
-            yz,
-        }
-        .scaled(1.0 / largest);
+        let deviator = Symmetric { x, y, z, xy, xz, yz }.scaled(1.0 / largest);
         let [a, b, c] = deviator.eigenvalues();
         Principal::ordered([mean + largest * a, mean + largest * b, mean + largest * c])
     }
@@ -208,11 +190,7 @@ impl Symmetric {
     }
 
     fn rows(&self) -> [Vector; 3] {
-        [
-            [self.x, self.xy, self.xz],
-            [self.xy, self.y, self.yz],
-            [self.xz, self.yz, self.z],
-        ]
+        [[self.x, self.xy, self.xz], [self.xy, self.y, self.yz], [self.xz, self.yz, self.z]]
     }
 
     fn times(&self, v: Vector) -> Vector {
@@ -301,11 +279,8 @@ mod tests {
             [sa * cb, sa * sb * sc + ca * cc, sa * sb * cc - ca * sc],
             [-sb, cb * sc, cb * cc],
         ];
-        let entry = |i: usize, j: usize| {
-            (0..3)
-                .map(|k| frame[i][k] * values[k] * frame[j][k])
-                .sum::<f64>()
-        };
+        let entry =
+            |i: usize, j: usize| (0..3).map(|k| frame[i][k] * values[k] * frame[j][k]).sum::<f64>();
         CartesianStress {
             sigma_x_kpa: entry(0, 0),
             sigma_y_kpa: entry(1, 1),
@@ -321,14 +296,10 @@ mod tests {
         let mut sorted = values;
         sorted.sort_by(|a, b| b.total_cmp(a));
         let size = values.iter().fold(0.0_f64, |big, v| big.max(v.abs()));
-        for (got, want) in [found.sigma_1_kpa, found.sigma_2_kpa, found.sigma_3_kpa]
-            .iter()
-            .zip(sorted)
+        for (got, want) in
+            [found.sigma_1_kpa, found.sigma_2_kpa, found.sigma_3_kpa].iter().zip(sorted)
         {
-            assert!(
-                (got - want).abs() <= 4e-15 * size,
-                "{values:?} {angles:?}: {found:?}"
-            );
+            assert!((got - want).abs() <= 4e-15 * size, "{values:?} {angles:?}: {found:?}");
         }
     }
 
@@ -366,10 +337,7 @@ mod tests {
         };
         assert_eq!(even.principal().sigma_1_kpa, 7.0);
         assert_eq!(even.principal().sigma_3_kpa, 7.0);
-        let tiny = CartesianStress {
-            sigma_z_kpa: 1e-200,
-            ..CartesianStress::default()
-        };
+        let tiny = CartesianStress { sigma_z_kpa: 1e-200, ..CartesianStress::default() };
         assert!((tiny.principal().sigma_1_kpa - 1e-200).abs() < 1e-214);
     }
 
@@ -387,10 +355,7 @@ mod tests {
         assert!((one.sigma_3_kpa - other.sigma_3_kpa).abs() < 1e-13);
         assert!((one.octahedral_normal_kpa() - 45.0).abs() < 1e-13);
         // One direction loaded: tau_oct = sqrt(2)/3 sigma.
-        let single = Principal {
-            sigma_1_kpa: 30.0,
-            ..Principal::default()
-        };
+        let single = Principal { sigma_1_kpa: 30.0, ..Principal::default() };
         assert!((single.octahedral_shear_kpa() - 10.0 * libm::sqrt(2.0)).abs() < 1e-13);
     }
 }

@@ -10,15 +10,12 @@ pub struct Row {
 
 impl Row {
     pub fn text(&self, column: &str) -> &str {
-        self.cells
-            .get(column)
-            .unwrap_or_else(|| panic!("no column {column}"))
+        self.cells.get(column).unwrap_or_else(|| panic!("no column {column}"))
     }
 
     pub fn number(&self, column: &str) -> f64 {
         let text = self.text(column);
-        text.parse()
-            .unwrap_or_else(|_| panic!("{column} holds {text:?}, not a number"))
+        text.parse().unwrap_or_else(|_| panic!("{column} holds {text:?}, not a number"))
     }
 
     /// `None` where the cell is empty.
@@ -29,22 +26,15 @@ impl Row {
 
 /// All rows of `tests/reference/elastic/<name>`.
 pub fn elastic(name: &str) -> Vec<Row> {
-    let path = Path::new(env!("CARGO_MANIFEST_DIR"))
-        .join("../tests/reference/elastic")
-        .join(name);
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("../tests/reference/elastic").join(name);
     let mut reader = csv::Reader::from_path(&path).unwrap_or_else(|e| panic!("{path:?}: {e}"));
     let headings = reader.headers().expect("headings").clone();
     let rows: Vec<Row> = reader
         .records()
         .map(|record| {
             let record = record.expect("a readable row");
-            let cells = headings
-                .iter()
-                .zip(&record)
-                .map(|(h, c)| (h.to_owned(), c.to_owned()));
-            Row {
-                cells: cells.collect(),
-            }
+            let cells = headings.iter().zip(&record).map(|(h, c)| (h.to_owned(), c.to_owned()));
+            Row { cells: cells.collect() }
         })
         .collect();
     assert!(!rows.is_empty(), "{path:?} holds no rows");
@@ -61,8 +51,7 @@ pub struct Worst {
 impl Worst {
     pub fn take(&mut self, got: f64, want: f64, place: impl Fn() -> String) {
         let difference = (got - want).abs();
-        // Written so that NaN is the worst of all.
-        if !(difference <= self.difference) {
+        if difference > self.difference || difference.is_nan() {
             self.difference = difference;
             self.place = format!("{}: got {got:e}, want {want:e}", place());
         }
@@ -75,9 +64,6 @@ impl Worst {
             self.difference,
             self.place
         );
-        println!(
-            "largest difference {:.1e} at {}",
-            self.difference, self.place
-        );
+        println!("largest difference {:.1e} at {}", self.difference, self.place);
     }
 }
