@@ -425,8 +425,9 @@ mod tests {
         let mut creep = Creep::default();
         let mut last = 0.0;
         for day in 0..3000_i64 {
-            let stage = (day / 300) as f64;
-            let load = (25.0 * stage - 40.0 * ((day / 700) % 2) as f64).max(0.0);
+            let stage = libm::floor(day as f64 / 300.0);
+            let lowered = if (700..1400).contains(&day) { 40.0 } else { 0.0 };
+            let load = (25.0 * stage - lowered).max(0.0);
             let ratio = libm::exp(-((day % 300) as f64) / 30.0);
             creep.update(day * DAY, load, ratio).unwrap();
             assert!(creep.cycles() >= last, "day {day}");

@@ -13,7 +13,7 @@ pub fn layer(
     preconsolidation: Preconsolidation,
 ) -> Layer {
     Layer {
-        name: Name::try_from("clay").expect("short"),
+        name: Name::try_from("clay").unwrap_or_default(),
         thickness_m,
         unit_weight_above_water_kn_m3: unit_weight_kn_m3,
         unit_weight_below_water_kn_m3: unit_weight_kn_m3,
