@@ -1,5 +1,13 @@
 //! Settlements against reference tables, worked examples in print and the laws they must obey.
 
+#![allow(
+    clippy::panic,
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::indexing_slicing,
+    reason = "a test may panic; clippy excuses only functions marked as tests"
+)]
+
 mod reference_table;
 mod sample_ground;
 
@@ -14,6 +22,7 @@ use brimstead_core::settlement::primary::{
     primary_settlement, primary_settlement_by_sublayers, primary_settlement_by_sublayers_with,
     primary_settlement_with,
 };
+use brimstead_core::settlement::sand::{SandLayer, SandLoad, strain_influence_settlement};
 use brimstead_core::settlement::secondary::{
     secondary_settlement_from_end_of_primary_m, secondary_settlement_m,
 };
@@ -75,8 +84,7 @@ fn every_sublayer_of_the_table_is_reproduced() {
             row.number("settlement_mm") / 1000.0;
     }
     for ((place, index), want_m) in sums {
-        let found =
-            primary_settlement_by_sublayers(&profile, increment(&place), 0.0, 0.5).unwrap();
+        let found = primary_settlement_by_sublayers(&profile, increment(&place), 0.0, 0.5).unwrap();
         let what = format!("{place}, layer {}", index + 1);
         assert_relative(found.by_layer_m[index], want_m, CLOSED_FORM, &what);
     }
@@ -101,7 +109,12 @@ fn the_integral_over_depth_agrees_with_the_exact_table_and_its_error_bound_holds
             assert!((loose.settlement_m - want_m).abs() <= bound_m, "{place}: {loose:?}");
         } else {
             let found_m = tight.by_layer_m[layer_index(&row)];
-            assert_relative(found_m, want_m, 1e-9, &format!("{place}, layer {}", row.text("layer")));
+            assert_relative(
+                found_m,
+                want_m,
+                1e-9,
+                &format!("{place}, layer {}", row.text("layer")),
+            );
         }
     }
 }
@@ -173,6 +186,53 @@ fn lateral_spread_of_pore_pressure_agrees_with_the_table_and_with_print() {
     }
 }
 
+#[test]
+fn stress_below_a_disc_agrees_with_the_table() {
+    let disc = Disc::new(RADIUS_M, PRESSURE_KPA, 0.5).unwrap();
+    for row in time("t05_sigma_z_circle.csv") {
+        let (r, z) = (row.number("r_over_a") * RADIUS_M, row.number("z_over_a") * RADIUS_M);
+        let ratio = disc.stress_at(r, z).unwrap().sigma_z_kpa / PRESSURE_KPA;
+        assert!((ratio - row.number("sigma_z_over_q")).abs() < 1e-14, "{r} {z}");
+    }
+}
+
+#[test]
+fn strain_influence_agrees_with_thin_slices() {
+    let load = |diameter_m, net_pressure_kpa, overburden_kpa, at_peak_kpa, time_years| SandLoad {
+        diameter_m,
+        net_pressure_kpa,
+        overburden_kpa,
+        effective_overburden_at_peak_kpa: at_peak_kpa,
+        time_years,
+    };
+    let cases = [
+        (
+            load(12.0, 110.0, 18.0, 74.0, 20.0),
+            &[(4.0, 9000.0), (11.5, 16000.0), (30.0, 35000.0)][..],
+        ),
+        (load(40.0, 180.0, 0.0, 190.0, 1.0), &[(13.0, 22000.0), (27.0, 12500.0), (80.0, 60000.0)]),
+        (load(5.0, 60.0, 90.0, 115.0, 0.05), &[(2.0, 8000.0), (10.0, 14000.0)]),
+    ];
+    for (row, (load, soils)) in time("settlement_sand.csv").iter().zip(cases) {
+        let mut top_m = 0.0;
+        let layers: Vec<SandLayer> = soils
+            .iter()
+            .map(|&(base_m, modulus_kpa)| {
+                let layer = SandLayer { top_m, base_m, modulus_kpa };
+                top_m = base_m;
+                layer
+            })
+            .collect();
+        let found = strain_influence_settlement(&load, &layers).unwrap();
+        // The slice in which the modulus jumps is 1/400,000 of the depth.
+        let case = row.text("case");
+        assert_relative(found.settlement_m, row.number("settlement_m"), 5e-6, case);
+        assert_relative(found.c1, row.number("c1"), CLOSED_FORM, case);
+        assert_relative(found.c2, row.number("c2"), CLOSED_FORM, case);
+        assert_relative(found.peak_influence, row.number("peak_influence"), CLOSED_FORM, case);
+    }
+}
+
 /// A printed value with its tolerance.
 struct Printed(Vec<Row>);
 
@@ -190,8 +250,7 @@ impl Printed {
 fn a_reclamation_of_ten_sublayers_agrees_with_its_printed_table() {
     let printed = Printed(time("settlement_published.csv"));
     let law = Compressibility::Ratio { compression_ratio: 0.29, recompression_ratio: 0.29 };
-    let increments_kpa =
-        [205.5, 198.9, 194.4, 192.5, 191.9, 191.9, 192.5, 194.4, 198.9, 205.5];
+    let increments_kpa = [205.5, 198.9, 194.4, 192.5, 191.9, 191.9, 192.5, 194.4, 198.9, 205.5];
     let mut total_m = 0.0;
     for (index, increment_kpa) in increments_kpa.into_iter().enumerate() {
         // Effective unit weight 5.9 kN/m3: 2.95 kPa in the middle of the first metre.
@@ -268,9 +327,6 @@ fn half_space(radius_m: f64, pressure_kpa: f64, r_m: f64) -> impl Fn(f64, f64) -
 fn immediate_settlement_on_a_rigid_base_is_as_near_as_claimed() {
     for row in elastic("finite_layer_nu_half.csv") {
         let thickness = row.number("thickness_over_radius");
-        if thickness < 1.0 || row.text("place") != "centre" {
-            continue;
-        }
         let law = Compressibility::Modulus { constrained_modulus_kpa: 1000.0 };
         let clay = Layer {
             young_undrained_kpa: 20_000.0,
@@ -281,16 +337,16 @@ fn immediate_settlement_on_a_rigid_base_is_as_near_as_claimed() {
         let found = immediate_settlement(&profile, half_space(10.0, 100.0, 0.0), 0.0).unwrap();
         let factor = found.settlement_m * 20_000.0 / (100.0 * 10.0);
         let relative = factor / row.number("settlement") - 1.0;
-        assert!((-0.06..=0.0).contains(&relative), "H/a = {thickness}: {relative}");
+        let claimed = if thickness < 1.0 { 0.35..=0.37 } else { -0.06..=0.0 };
+        assert!(claimed.contains(&relative), "H/a = {thickness}: {relative}");
     }
 }
 
 #[test]
 fn immediate_settlement_of_a_uniform_half_space_is_that_of_the_half_space() {
     let mut site = crust_over_soft_clay();
-    for (index, soil) in site.layers.iter_mut().enumerate() {
+    for soil in &mut site.layers {
         soil.young_undrained_kpa = 8000.0;
-        soil.undrained_strength_kpa = 10.0 * index as f64;
     }
     site.base_stiffness = BaseStiffness::HalfSpace { young_kpa: 8000.0, poisson: 0.5 };
     let profile = Profile::new(&site).unwrap();
@@ -313,10 +369,8 @@ fn immediate_settlement_of_a_uniform_half_space_is_that_of_the_half_space() {
 /// every kind of stress history, loaded 1 m down.
 fn flooded() -> Ground {
     use Compressibility::{Index, Modulus, Ratio};
-    let ratio = |compression_ratio, recompression_ratio| Ratio {
-        compression_ratio,
-        recompression_ratio,
-    };
+    let ratio =
+        |compression_ratio, recompression_ratio| Ratio { compression_ratio, recompression_ratio };
     let layers = [
         layer(2.5, 15.5, ratio(0.30, 0.035), Preconsolidation::PopKpa(12.0)),
         layer(
@@ -330,10 +384,7 @@ fn flooded() -> Ground {
     ];
     let points = [(1.0, 24.525), (4.0, 58.0), (10.0, 122.0), (16.0, 165.0)];
     Ground {
-        water: GroundWater::Profile {
-            water_table_m: -1.5,
-            points: points.into_iter().collect(),
-        },
+        water: GroundWater::Profile { water_table_m: -1.5, points: points.into_iter().collect() },
         ..ground(layers, 0.0)
     }
 }

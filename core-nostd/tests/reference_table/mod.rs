@@ -1,5 +1,7 @@
 //! Reads the reference tables of the project.
 
+#![allow(dead_code, reason = "shared by several tests, each of which uses a part of it")]
+
 use std::collections::HashMap;
 use std::path::Path;
 
@@ -26,8 +28,22 @@ impl Row {
 
 /// All rows of `tests/reference/elastic/<name>`.
 pub fn elastic(name: &str) -> Vec<Row> {
-    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("../tests/reference/elastic").join(name);
-    let mut reader = csv::Reader::from_path(&path).unwrap_or_else(|e| panic!("{path:?}: {e}"));
+    table("elastic", name)
+}
+
+/// All rows of `tests/reference/time/<name>`.
+pub fn time(name: &str) -> Vec<Row> {
+    table("time", name)
+}
+
+/// All rows of a table; lines that begin with `#` tell its origin.
+fn table(folder: &str, name: &str) -> Vec<Row> {
+    let references = Path::new(env!("CARGO_MANIFEST_DIR")).join("../tests/reference");
+    let path = references.join(folder).join(name);
+    let mut reader = csv::ReaderBuilder::new()
+        .comment(Some(b'#'))
+        .from_path(&path)
+        .unwrap_or_else(|e| panic!("{path:?}: {e}"));
     let headings = reader.headers().expect("headings").clone();
     let rows: Vec<Row> = reader
         .records()
