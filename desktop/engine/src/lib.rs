@@ -1,6 +1,10 @@
 //! What the desktop programs share. No formula of the ground lives here: numbers come from
 //! `brimstead_core`, this crate brings them in, sets them side by side and hands them out.
+//!
+//! [`series`] makes readings ready for drawing, [`chart`] draws them.
 
+pub mod chart;
+pub mod series;
 pub mod site;
 pub mod time;
 pub mod units;
