@@ -437,6 +437,21 @@ mod tests {
     }
 
     #[test]
+    fn a_saved_state_goes_on_as_if_never_stopped() {
+        let mut creep = filled(1, 333);
+        let mut bytes = [0_u8; 512];
+        let length = serde_json_core::to_slice(&creep, &mut bytes).unwrap();
+        let (mut restored, _): (Creep, usize) =
+            serde_json_core::from_slice(&bytes[..length]).unwrap();
+        assert_eq!(restored, creep);
+        for state in [&mut creep, &mut restored] {
+            state.update(700 * DAY, 140.0, 0.3).unwrap();
+            state.update(1500 * DAY, 140.0, 0.0).unwrap();
+        }
+        assert_eq!(restored, creep);
+    }
+
+    #[test]
     fn time_running_back_and_nan_are_refused_and_change_nothing() {
         let mut creep = filled(1, 500);
         let before = creep;
