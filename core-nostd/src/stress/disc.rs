@@ -68,14 +68,12 @@ surface::evaluation!(Disc);
 impl SurfaceLoad for Disc {
     const SOURCE: &'static str =
         "Love 1929; Eason, Noble & Sneddon 1955; functions A to H as in Ahlvin & Ulery 1962";
+    const STRESS_ON_RIM: bool = true;
+    const DISPLACEMENT_ON_RIM: bool = true;
     type Integrals<const N: usize> = DiscIntegrals<N>;
 
     fn radius_m(&self) -> f64 {
         self.radius_m
-    }
-
-    fn has_value_on_rim(&self) -> bool {
-        true
     }
 
     #[inline(always)]

@@ -4,11 +4,13 @@
 //! |---|---|
 //! | uniform pressure on a circle (liquid, floor, pad) | [`disc`] |
 //! | line load on a circle (shell, ring wall) | [`ring`] |
-//! | several of both at their places in plan | [`superposition`] |
+//! | mean pressure under a stiff plate (foundation block, test plate) | [`rigid`] |
+//! | several discs and rings at their places in plan | [`superposition`] |
 //!
 //! All results are *increments* caused by the load; the stress that was there before is not in
 //! them. The ground is a homogeneous, isotropic, linear elastic half-space, weightless, with the
-//! load on its surface; the load keeps its shape (flexible) and carries no shear.
+//! load on its surface; the load carries no shear. [`westergaard`] is the limit of a ground that
+//! cannot strain sideways.
 //!
 //! # Axes and signs
 //! z downwards from the loaded level, r outwards from the axis of the load, theta around it.
@@ -19,13 +21,17 @@ mod integrals;
 mod surface;
 
 pub mod disc;
+pub mod rigid;
 pub mod ring;
 pub mod superposition;
 pub mod tensor;
+pub mod westergaard;
 
 pub use disc::Disc;
+pub use rigid::RigidDisc;
 pub use ring::Ring;
 pub use tensor::{AxisymmetricStress, CartesianStress, Principal};
+pub use westergaard::WestergaardDisc;
 
 use crate::quantity::{Bounded, OutOfRange};
 use core::fmt;
@@ -107,9 +113,10 @@ pub static PLAN_COORDINATE: Bounded = Bounded {
 pub enum StressError {
     /// An input outside its range.
     OutOfRange(OutOfRange),
-    /// The point lies on the line load itself, where stress and settlement are infinite.
-    OnLineLoad {
-        /// Radius of the ring, m.
+    /// The point lies on the edge of a load that concentrates there (a line load, a rigid plate),
+    /// where what was asked for is infinite.
+    NoFiniteValue {
+        /// Radius of the edge, m.
         radius_m: f64,
     },
     /// As many results as points are needed.
@@ -138,10 +145,11 @@ impl fmt::Display for StressError {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
             Self::OutOfRange(refused) => refused.fmt(f),
-            Self::OnLineLoad { radius_m } => write!(
+            Self::NoFiniteValue { radius_m } => write!(
                 f,
-                "the point lies on the line load (radius {radius_m} m, depth 0), where stress and \
-                 settlement have no finite value; ask for a point below or beside it"
+                "the point lies on the edge of the load (radius {radius_m} m, depth 0), where a \
+                 line load or a rigid plate gives no finite value; ask for a point below or \
+                 beside it"
             ),
             Self::LengthsDiffer { points, results } => {
                 write!(f, "{points} points were given with room for {results} results")

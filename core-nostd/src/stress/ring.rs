@@ -19,7 +19,7 @@ use crate::working::Working;
 /// use brimstead_core::stress::{Ring, StressError};
 /// let shell = Ring::new(10.0, 40.0, 0.3)?;
 /// assert!(shell.stress_at(10.0, 1.0)?.sigma_z_kpa > 0.0);
-/// assert!(matches!(shell.stress_at(10.0, 0.0), Err(StressError::OnLineLoad { .. })));
+/// assert!(matches!(shell.stress_at(10.0, 0.0), Err(StressError::NoFiniteValue { .. })));
 /// # Ok::<(), StressError>(())
 /// ```
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -66,14 +66,12 @@ surface::evaluation!(Ring);
 impl SurfaceLoad for Ring {
     const SOURCE: &'static str =
         "Boussinesq 1885 integrated around the circle; Eason, Noble & Sneddon 1955";
+    const STRESS_ON_RIM: bool = false;
+    const DISPLACEMENT_ON_RIM: bool = false;
     type Integrals<const N: usize> = RingIntegrals<N>;
 
     fn radius_m(&self) -> f64 {
         self.radius_m
-    }
-
-    fn has_value_on_rim(&self) -> bool {
-        false
     }
 
     #[inline(always)]

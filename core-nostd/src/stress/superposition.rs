@@ -232,13 +232,13 @@ impl Load {
 }
 
 #[inline]
-fn stresses(
-    load: &impl SurfaceLoad,
+fn stresses<L: SurfaceLoad>(
+    load: &L,
     r_m: Lanes<BATCH>,
     z_m: Lanes<BATCH>,
 ) -> Result<[Lanes<BATCH>; 4], StressError> {
     let at = Geometry::new(r_m, z_m, load.radius_m());
-    check_rim(load, &at)?;
+    check_rim(&at, load.radius_m(), L::STRESS_ON_RIM)?;
     Ok(load.stresses(&at, &load.integrals(&at)))
 }
 

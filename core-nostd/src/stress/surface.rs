@@ -15,8 +15,11 @@ pub(super) trait SurfaceLoad {
     type Integrals<const N: usize>;
 
     fn radius_m(&self) -> f64;
-    /// Whether stress and settlement have a value on the edge of the load at its level.
-    fn has_value_on_rim(&self) -> bool;
+    /// Whether the stress has a value on the edge of the load at its level.
+    const STRESS_ON_RIM: bool;
+    /// Whether the displacement has one.
+    const DISPLACEMENT_ON_RIM: bool;
+
     fn integrals<const N: usize>(&self, at: &Geometry<N>) -> Self::Integrals<N>;
     /// `sigma_z, sigma_r, sigma_theta, tau_rz`, kPa.
     fn stresses<const N: usize>(&self, at: &Geometry<N>, by: &Self::Integrals<N>) -> [Lanes<N>; 4];
@@ -170,21 +173,28 @@ impl<'a, W: Working> Trail<'a, W> {
     }
 }
 
-/// Refuses lanes that lie where the load has no finite value.
+/// Refuses lanes on the edge of the load when there is no value there.
 pub(super) fn check_rim<const N: usize>(
-    load: &impl SurfaceLoad,
     at: &Geometry<N>,
+    radius_m: f64,
+    has_value: bool,
 ) -> Result<(), StressError> {
-    if !load.has_value_on_rim() && at.on_rim().sum() > 0.0 {
-        return Err(StressError::OnLineLoad { radius_m: load.radius_m() });
+    if has_value || at.on_rim().sum() == 0.0 {
+        Ok(())
+    } else {
+        Err(StressError::NoFiniteValue { radius_m })
     }
-    Ok(())
 }
 
-fn geometry_at(load: &impl SurfaceLoad, r_m: f64, z_m: f64) -> Result<Geometry<1>, StressError> {
+fn geometry_at(
+    radius_m: f64,
+    r_m: f64,
+    z_m: f64,
+    has_value_on_rim: bool,
+) -> Result<Geometry<1>, StressError> {
     let point = AxisPoint { r_m, z_m }.check(None)?;
-    let at = Geometry::new(Lanes([point.r_m]), Lanes([point.z_m]), load.radius_m());
-    check_rim(load, &at)?;
+    let at = Geometry::new(Lanes([point.r_m]), Lanes([point.z_m]), radius_m);
+    check_rim(&at, radius_m, has_value_on_rim)?;
     Ok(at)
 }
 
@@ -194,7 +204,7 @@ pub(super) fn stress_at_with<L: SurfaceLoad>(
     z_m: f64,
     working: &mut impl Working,
 ) -> Result<AxisymmetricStress, StressError> {
-    let at = geometry_at(load, r_m, z_m)?;
+    let at = geometry_at(load.radius_m(), r_m, z_m, L::STRESS_ON_RIM)?;
     let by = load.integrals(&at);
     let [sigma_z, sigma_r, sigma_theta, tau_rz] = load.stresses(&at, &by).map(Lanes::value);
     let result = AxisymmetricStress {
@@ -218,7 +228,7 @@ pub(super) fn displacement_at_with<L: SurfaceLoad>(
     working: &mut impl Working,
 ) -> Result<Displacement, StressError> {
     let young_kpa = YOUNG.check(young_kpa)?;
-    let at = geometry_at(load, r_m, z_m)?;
+    let at = geometry_at(load.radius_m(), r_m, z_m, L::DISPLACEMENT_ON_RIM)?;
     let by = load.integrals(&at);
     let [settlement_m, radial_m] = load.displacements(young_kpa, &at, &by).map(Lanes::value);
     let result = Displacement { settlement_m, radial_m };
@@ -230,8 +240,8 @@ pub(super) fn displacement_at_with<L: SurfaceLoad>(
     Ok(result)
 }
 
-pub(super) fn stress_into(
-    load: &impl SurfaceLoad,
+pub(super) fn stress_into<L: SurfaceLoad>(
+    load: &L,
     points: &[AxisPoint],
     out: &mut [AxisymmetricStress],
 ) -> Result<(), StressError> {
@@ -242,7 +252,7 @@ pub(super) fn stress_into(
         point.check(Some(index))?;
     }
     for some in points.chunks(BATCH) {
-        check_rim(load, &lanes_of(some, load.radius_m()))?;
+        check_rim(&lanes_of(some, load.radius_m()), load.radius_m(), L::STRESS_ON_RIM)?;
     }
     for (points, out) in points.chunks(BATCH).zip(out.chunks_mut(BATCH)) {
         let at = lanes_of(points, load.radius_m());
