@@ -4,7 +4,7 @@
 use super::SettlementError;
 use super::quadrature::integrate;
 use super::strain::StressStrain;
-use crate::config::{MAX_LAYERS, MAX_PROFILE_POINTS};
+use crate::config::MAX_LAYERS;
 use crate::ground::{Compressibility, LayerAt, Profile};
 use crate::quantity::Bounded;
 use crate::working::{Silent, Step, Working};
@@ -29,8 +29,6 @@ pub static SUBLAYER_THICKNESS: Bounded = Bounded {
 
 /// Looks per stretch for the depth at which the stress path passes the preconsolidation pressure.
 const LOOKS: u32 = 8;
-/// Depths that part a layer into stretches without bend of the in-situ stress.
-type Cuts = Vec<f64, { MAX_PROFILE_POINTS + 4 }>;
 
 /// Primary settlement with the share of each layer.
 #[derive(Debug, Clone, PartialEq)]
@@ -239,11 +237,13 @@ impl<F: Fn(f64) -> Result<f64, SettlementError>> Column<'_, '_, F> {
         working: &mut impl Working,
     ) -> Result<(f64, f64), SettlementError> {
         let mut sum = (0.0, 0.0);
-        let cuts = self.cuts(at, top_m);
-        for (&from, &to) in cuts.iter().zip(cuts.iter().skip(1)) {
-            if from < to {
-                self.stretch(at, from, to, &mut sum, working)?;
-            }
+        let bends = self.profile.bends();
+        let mut from = top_m;
+        // Each round ends at the next bend or, last, at the base.
+        while from < at.base_m {
+            let to = bends.iter().copied().filter(|bend| *bend > from).fold(at.base_m, f64::min);
+            self.stretch(at, from, to, &mut sum, working)?;
+            from = to;
         }
         Ok(sum)
     }
@@ -328,16 +328,5 @@ impl<F: Fn(f64) -> Result<f64, SettlementError>> Column<'_, '_, F> {
         // One end is negative and the other is not, so that the difference is not zero.
         let share = above.1 / (above.1 - below.1);
         Ok(above.0 + share * (below.0 - above.0))
-    }
-
-    /// Ends of the layer and bends within it, in order.
-    fn cuts(&self, at: &LayerAt<'_>, top_m: f64) -> Cuts {
-        let inside = |depth_m: &f64| *depth_m > top_m && *depth_m < at.base_m;
-        let mut cuts: Cuts = self.profile.bends().into_iter().filter(inside).collect();
-        // Room for both by the type's length.
-        let _ = cuts.push(top_m);
-        let _ = cuts.push(at.base_m);
-        cuts.sort_unstable_by(f64::total_cmp);
-        cuts
     }
 }

@@ -45,38 +45,27 @@ pub(super) fn integrate(
     target: f64,
 ) -> Result<Integral, SettlementError> {
     let mut stretches: Vec<Stretch, MAX_STRETCHES> = Vec::new();
-    let mut add = Some((rule(f, from, to)?, None));
+    let mut add = rule(f, from, to)?;
     loop {
-        let mut full = false;
-        if let Some((first, second)) = add.take() {
-            full |= stretches.push(first).is_err();
-            if let Some(second) = second {
-                full |= stretches.push(second).is_err();
-            }
-        }
+        let full = stretches.push(add).is_err();
         // Smallest first would be the better sum; with this few terms it makes no difference.
         let value: f64 = stretches.iter().map(|stretch| stretch.value).sum();
         let error: f64 = stretches.iter().map(|stretch| stretch.error).sum();
-        if error <= target.max(1e-14 * value.abs()) {
+        if !full && error <= target.max(1e-14 * value.abs()) {
             return Ok(Integral { value, error });
         }
-        let worst = stretches
-            .iter()
-            .enumerate()
-            .max_by(|one, other| one.1.error.total_cmp(&other.1.error))
-            .map(|(index, _)| index);
-        let refused = SettlementError::NotConverged {
-            top_m: from,
-            base_m: to,
-            error_m: error,
-            target_m: target,
+        let worst = stretches.iter_mut().max_by(|one, other| one.error.total_cmp(&other.error));
+        let Some(worst) = worst.filter(|_| !full) else {
+            return Err(SettlementError::NotConverged {
+                top_m: from,
+                base_m: to,
+                error_m: error,
+                target_m: target,
+            });
         };
-        let Some(worst) = worst.filter(|_| !full && !stretches.is_full()) else {
-            return Err(refused);
-        };
-        let whole = stretches.swap_remove(worst);
-        let middle = 0.5 * (whole.from + whole.to);
-        add = Some((rule(f, whole.from, middle)?, Some(rule(f, middle, whole.to)?)));
+        let middle = 0.5 * (worst.from + worst.to);
+        add = rule(f, middle, worst.to)?;
+        *worst = rule(f, worst.from, middle)?;
     }
 }
 
