@@ -494,6 +494,29 @@ fn the_depth_at_which_the_preconsolidation_pressure_is_passed_is_found() {
     assert!((2.0..5.0).contains(&crossings[0]));
 }
 
+#[test]
+fn a_bend_just_inside_a_layer_boundary_is_not_overlooked() {
+    // The soft clay passes its preconsolidation pressure within millimetres of its base; a layer
+    // parted in the middle, which has its nodes elsewhere, must give the same settlement.
+    let pressure_kpa = 140.774_895_237_743_38;
+    let mut site = crust_over_soft_clay();
+    site.layers[2].preconsolidation = Preconsolidation::Ocr(2.785_100_679_744_576);
+    let mut upper = site.layers[2].clone();
+    upper.thickness_m = 1.85;
+    let mut lower = site.layers[2].clone();
+    lower.thickness_m -= upper.thickness_m;
+    let [crust, first, _, last] = &site.layers[..] else { panic!("four layers") };
+    let layers = [crust, first, &upper, &lower, last].into_iter().cloned().collect();
+    let parted = Ground { layers, ..site.clone() };
+    let of = |ground: &Ground| {
+        let profile = Profile::new(ground).unwrap();
+        let load = |depth_m: f64| pressure_kpa / (1.0 + 0.05 * depth_m);
+        primary_settlement(&profile, load, 0.0, 1e-10).unwrap().settlement_m
+    };
+    let (whole, parted) = (of(&site), of(&parted));
+    assert!((whole - parted).abs() < 3e-10, "{whole} m against {parted} m");
+}
+
 proptest! {
     #![proptest_config(ProptestConfig::with_cases(64))]
 

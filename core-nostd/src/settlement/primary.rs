@@ -27,8 +27,13 @@ pub static SUBLAYER_THICKNESS: Bounded = Bounded {
     remedy: "0.5 to 1 m is usual.",
 };
 
-/// Looks per stretch for the depth at which the stress path passes the preconsolidation pressure.
+/// Parts of a stretch between the looks for the depth at which the stress path passes the
+/// preconsolidation pressure.
 const LOOKS: u32 = 8;
+/// The first and the last look stand this part of the stretch inside its ends, where nothing may
+/// be asked for. Further in, the bend would slip past the outermost node of the quadrature (0.4 %
+/// of the stretch) and past its error bound.
+const FIRST_LOOK: f64 = 1e-6;
 
 /// Primary settlement with the share of each layer.
 #[derive(Debug, Clone, PartialEq)]
@@ -262,9 +267,10 @@ impl<F: Fn(f64) -> Result<f64, SettlementError>> Column<'_, '_, F> {
         let mut last: Option<(f64, f64)> = None;
         // A linear law has no such depth.
         let linear = matches!(at.layer.compressibility, Compressibility::Modulus { .. });
-        let looks = if linear { 0 } else { LOOKS };
+        let looks = if linear { 0 } else { LOOKS + 1 };
         for look in 0..looks {
-            let depth_m = from + (to - from) * (f64::from(look) + 0.5) / f64::from(looks);
+            let part = f64::from(look) / f64::from(LOOKS);
+            let depth_m = from + (to - from) * part.clamp(FIRST_LOOK, 1.0 - FIRST_LOOK);
             let beyond_kpa = self.beyond_preconsolidation_kpa(at, depth_m)?;
             if let Some(above) = last.filter(|above| (above.1 < 0.0) != (beyond_kpa < 0.0)) {
                 let crossing_m = self.crossing(at, above, (depth_m, beyond_kpa))?;

@@ -35,7 +35,7 @@ def main(source):
         for script in ("latin", "latin-ext"):
             part = TTFont(Path(source) / f"{FAMILY}-{script}-{weight}-normal.woff2")
             part.flavor = None
-            parts.append(f"/tmp/{script}-{weight}.ttf")
+            parts.append(Path(source) / f"{FAMILY}-{script}-{weight}.ttf")
             part.save(parts[-1])
         font = Merger(options=Options(drop_tables=["GlyphOrder", "prep", "gasp", "STAT"])).merge(parts)
         tabular_digits(font)
