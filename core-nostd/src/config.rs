@@ -20,9 +20,13 @@ pub const CHECK_HISTORY: usize = 16;
 /// Limit rules of one instrument (a band, a curve, a fixed value and a rate together).
 pub const MAX_RULES: usize = 4;
 /// Points of a limit curve over applied pressure.
-pub const MAX_CURVE_POINTS: usize = 12;
+pub const MAX_CURVE_POINTS: usize = 10;
 /// Parts into which a rate window is divided; readings of one part are averaged.
 pub const RATE_PARTS: usize = 16;
+/// Longest reason given for an inhibition, in bytes.
+pub const REASON_BYTES: usize = 96;
+/// Longest time an alarm may be inhibited in one go, s (a week): after that somebody looks again.
+pub const INHIBITION_LONGEST_S: i64 = 604_800;
 
 /// A short owned name.
 pub type Name = heapless::String<NAME_BYTES>;

@@ -40,4 +40,5 @@ pub mod quantity;
 pub mod settlement;
 pub mod stress;
 pub mod units;
+pub mod watch;
 pub mod working;

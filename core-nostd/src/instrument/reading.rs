@@ -329,6 +329,21 @@ impl Reading {
         }
     }
 
+    /// The same reading without its contradictions, as it may come from a wire: a value that is
+    /// not finite is none, and a state that promises a value without one is failed. A state never
+    /// gets better by this.
+    #[must_use]
+    pub fn believed(self) -> Self {
+        let value = self.value.filter(|value| value.is_finite());
+        let promised =
+            matches!(self.state, DataState::Good | DataState::Suspect | DataState::Frozen);
+        if value.is_none() && (promised || self.value.is_some()) {
+            let doubt = if self.value.is_some() { Doubt::NotFinite } else { Doubt::NoSignal };
+            return Self { value, ..self }.with_doubt(doubt);
+        }
+        self
+    }
+
     /// The value when it is finite and good.
     #[must_use]
     pub fn good(&self) -> Option<f64> {
@@ -393,6 +408,11 @@ mod tests {
         let forged =
             Reading { time_s: 0, value: Some(f64::NAN), state: DataState::Good, doubt: None };
         assert_eq!((forged.good(), forged.doubtful()), (None, None));
+        assert_eq!(forged.believed(), Reading::absent(0, Doubt::NotFinite));
+        let empty = Reading { value: None, ..forged };
+        assert_eq!(empty.believed(), Reading::absent(0, Doubt::NoSignal));
+        let unread = Reading { state: DataState::NotRead, ..forged };
+        assert_eq!(unread.believed(), Reading { value: None, ..unread }, "not better than it was");
     }
 
     #[test]

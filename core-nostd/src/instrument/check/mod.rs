@@ -274,10 +274,7 @@ impl Checker {
     }
 
     fn ranged(&self, reading: Reading) -> Reading {
-        let finite = match reading.value {
-            Some(value) if !value.is_finite() => Reading::absent(reading.time_s, Doubt::NotFinite),
-            _ => reading,
-        };
+        let finite = reading.believed();
         match (self.checks.range, finite.value) {
             (Some(range), Some(value)) if value < range.low => {
                 finite.with_doubt(Doubt::BelowRange { limit: range.low })
