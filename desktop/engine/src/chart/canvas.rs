@@ -212,8 +212,9 @@ impl DrawingBackend for SvgCanvas<'_> {
             HPos::Right => "end",
         };
         let weight = if matches!(style.style(), FontStyle::Bold) { "600" } else { "400" };
+        let rim = if ink.rim { " stroke-ground" } else { "" };
         let mut look = format!(
-            " class=\"{} fill-{}\" fill=\"{}\" font-size=\"{}\" font-weight=\"{weight}\" text-anchor=\"{anchor}\"",
+            " class=\"{} fill-{}{rim}\" fill=\"{}\" font-size=\"{}\" font-weight=\"{weight}\" text-anchor=\"{anchor}\"",
             ink.class,
             ink.token.name(),
             hex(style.color()),

@@ -45,7 +45,8 @@ pub struct Limit<X> {
 }
 
 /// The trigger that a limit begins.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, serde::Serialize)]
+#[serde(rename_all = "snake_case")]
 pub enum LimitKind {
     Watch,
     Review,
@@ -53,11 +54,29 @@ pub enum LimitKind {
 }
 
 impl LimitKind {
-    const fn look(self) -> (&'static str, Token, Dash) {
+    /// The trigger's word.
+    pub const fn name(self) -> &'static str {
         match self {
-            Self::Watch => ("Watch", Token::Watch, Dash::Dotted),
-            Self::Review => ("Review", Token::Review, Dash::Short),
-            Self::Stop => ("Stop", Token::Stop, Dash::Long),
+            Self::Watch => "Watch",
+            Self::Review => "Review",
+            Self::Stop => "Stop",
+        }
+    }
+
+    /// Its colour.
+    pub const fn token(self) -> Token {
+        match self {
+            Self::Watch => Token::Watch,
+            Self::Review => Token::Review,
+            Self::Stop => Token::Stop,
+        }
+    }
+
+    const fn dash(self) -> Dash {
+        match self {
+            Self::Watch => Dash::Dotted,
+            Self::Review => Dash::Short,
+            Self::Stop => Dash::Long,
         }
     }
 }
@@ -157,7 +176,7 @@ impl InstrumentChart {
         };
         format!(
             "{} against time. {}{faults}",
-            self.quantity.name,
+            self.quantity.capitalized(),
             state(last_good(&self.readings), &self.quantity, self.mark, when)
         )
     }
@@ -172,7 +191,7 @@ impl PressureChart {
             title: self.title.clone(),
             description: format!(
                 "{} against applied pressure. {}",
-                self.quantity.name,
+                self.quantity.capitalized(),
                 state(last, &self.quantity, self.mark, &when.unwrap_or_default())
             ),
             x: Axis {
@@ -196,6 +215,11 @@ impl Quantity {
             downward: self.downward,
             ..Axis::default()
         }
+    }
+
+    fn capitalized(&self) -> String {
+        let mut letters = self.name.chars();
+        letters.next().map_or(String::new(), |first| first.to_uppercase().chain(letters).collect())
     }
 
     fn value(&self, value: f64) -> String {
@@ -254,7 +278,7 @@ fn look(class: &'static str, label: &str, token: Token, weight_px: f64) -> Look 
 }
 
 fn limit<X: Along>(limit: &Limit<X>) -> Series {
-    let (name, token, dash) = limit.kind.look();
+    let (name, token, dash) = (limit.kind.name(), limit.kind.token(), limit.kind.dash());
     let points = limit.points.iter().map(|(x, value)| (x.along(), *value)).collect();
     Series {
         look: Look { dash, ..look("limit", name, token, 1.4) },

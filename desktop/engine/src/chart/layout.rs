@@ -12,7 +12,7 @@ pub(crate) const SMALL_PX: f64 = 12.0;
 /// Size of the heading, px.
 pub(crate) const HEADING_PX: f64 = 14.0;
 /// Distance of label lines, px.
-pub(crate) const LABEL_GAP_PX: f64 = 14.0;
+pub(crate) const LABEL_GAP_PX: f64 = 14.5;
 
 const HEADING_ROW_PX: f64 = 22.0;
 const SMALL_ROW_PX: f64 = 16.0;

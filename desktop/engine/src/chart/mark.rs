@@ -3,15 +3,14 @@
 //! square with a stroke, and what cannot be judged a dashed square without one. The shape says it
 //! without colour, down to 12 px and in print.
 
-use super::canvas::{SvgCanvas, pen};
 use super::description::Dash;
-use super::sheet::{DrawError, Sheet, Stroke};
+use super::sheet::{DrawError, Sheet, Stroke, small_picture};
 use super::theme::{Theme, Token};
 use plotters_backend::DrawingBackend;
 
 /// What a mark says.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, serde::Serialize)]
-#[serde(rename_all = "snake_case")]
+#[serde(rename_all = "snake_case", tag = "trigger")]
 pub enum Mark {
     /// Inside the expected band.
     Normal,
@@ -84,21 +83,10 @@ impl Mark {
 
     /// The mark alone as SVG, `size_px` wide and high, named by its word.
     pub fn svg(self, size_px: f64, theme: &Theme) -> String {
-        let mut inner = String::new();
-        {
-            let pen = pen();
-            let canvas = SvgCanvas::new(&mut inner, (size_px, size_px), pen.clone(), theme);
-            let sheet = Sheet::new(canvas, pen, theme);
-            let middle = size_px / 2.0;
-            // The canvas cannot fail: it writes into memory.
-            let _ = self.draw(&sheet, (middle, middle), size_px * 0.44);
-            let _ = sheet.finish();
-        }
-        let size = super::canvas::short(size_px);
-        format!(
-            "<svg xmlns=\"http://www.w3.org/2000/svg\" class=\"mark\" role=\"img\" width=\"{size}\" height=\"{size}\" viewBox=\"0 0 {size} {size}\"><title>{}</title>{inner}</svg>",
-            self.phrase()
-        )
+        let middle = size_px / 2.0;
+        small_picture("mark", (size_px, size_px), theme, &self.phrase(), |sheet| {
+            self.draw(sheet, (middle, middle), size_px * 0.44)
+        })
     }
 
     /// Draws the mark around a place in pixels.

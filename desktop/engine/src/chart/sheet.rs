@@ -1,6 +1,6 @@
 //! Drawing in pixels with meaning: each stroke says what it is and takes its colour from the theme.
 
-use super::canvas::{Pen, STEPS, step};
+use super::canvas::{Pen, STEPS, SvgCanvas, escape, pen, short, step};
 use super::description::Dash;
 use super::font;
 use super::theme::{Theme, Token};
@@ -180,6 +180,28 @@ impl<'a, B: DrawingBackend> Sheet<'a, B> {
     {
         self.area.draw(element).map_err(DrawError::from_display)
     }
+}
+
+/// A picture of its own for the middle of a text, named by `name`.
+pub(crate) fn small_picture(
+    class: &str,
+    (width_px, height_px): (f64, f64),
+    theme: &Theme,
+    name: &str,
+    draw: impl FnOnce(&Sheet<'_, SvgCanvas<'_>>) -> Result<(), DrawError>,
+) -> String {
+    let mut inner = String::new();
+    {
+        let pen = pen();
+        let canvas = SvgCanvas::new(&mut inner, (width_px, height_px), pen.clone(), theme);
+        let sheet = Sheet::new(canvas, pen, theme);
+        // The canvas writes into memory and cannot fail; were it to, the name still stands.
+        let _ = draw(&sheet).and_then(|()| sheet.finish());
+    }
+    let (width, height, name) = (short(width_px), short(height_px), escape(name));
+    format!(
+        "<svg xmlns=\"http://www.w3.org/2000/svg\" class=\"{class}\" role=\"img\" width=\"{width}\" height=\"{height}\" viewBox=\"0 0 {width} {height}\"><title>{name}</title>{inner}</svg>"
+    )
 }
 
 fn at(place: Place) -> (i32, i32) {

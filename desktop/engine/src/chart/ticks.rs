@@ -70,7 +70,7 @@ pub(crate) fn log(low: f64, high: f64, most: usize) -> Vec<Tick> {
 }
 
 /// A number with a fixed count of decimals, a proper minus and groups of thousands.
-pub(crate) fn number(value: f64, decimals: usize) -> String {
+pub fn number(value: f64, decimals: usize) -> String {
     let text = format!("{:.decimals$}", value.abs());
     let zero = text.chars().all(|letter| matches!(letter, '0' | '.'));
     let (whole, part) = text.split_once('.').unwrap_or((&text, ""));

@@ -1,12 +1,15 @@
-//! Draws sample charts of an invented test, to be looked at:
-//! `cargo run -p brimstead-engine --example chart_samples -- FOLDER`.
+//! Draws sample charts and a report of an invented test, to be looked at:
+//! `cargo run -p brimstead-engine --example samples -- FOLDER`.
 //! Every number is invented.
+
+mod report;
 
 use brimstead_engine::chart::theme::{DARK, LIGHT, SUNLIGHT};
 use brimstead_engine::chart::{
     Chart, Expected, FillLine, InstrumentChart, Limit, LimitKind, Mark, PressureChart, Quantity,
     Reading, Size, Stack, Stretch, Theme, TriggerChange, png,
 };
+use brimstead_engine::report::{HtmlOptions, TerminalOptions, colour_wanted};
 use jiff::tz::TimeZone;
 use std::path::Path;
 
@@ -254,5 +257,9 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         let tall = Size { width_px: 720.0, height_px: 760.0 };
         save(folder, &format!("stack-{}", theme.name), &stack.render(tall, theme)?.svg)?;
     }
+    let page = report::page(&[&charts[3].1, &charts[0].1, &charts[2].1, &charts[4].1])?;
+    std::fs::write(folder.join("report.html"), page.to_html(HtmlOptions { embed_font: true }))?;
+    std::fs::write(folder.join("report.json"), page.to_json()?)?;
+    print!("{}", page.to_text(TerminalOptions { width: Some(140), colour: colour_wanted(true) }));
     Ok(())
 }
