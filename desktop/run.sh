@@ -15,9 +15,17 @@ fi
 
 for run in run-good run-bad; do
   out=target/demo/$run
+  # A report of an earlier run must not pass for one of this run.
+  rm -rf "$out"
   mkdir -p "$out"
   printf '\n== data-demo/%s (an invented site)\n' "$run"
-  "$program" compare data-demo/site.json --readings data-demo/"$run"/* --out "$out"
-  printf 'Written:\n'
-  find "$PWD/$out" -type f | sort | sed 's/^/  /'
+  # A status other than 0 may tell of the readings; whether a report came is what counts here.
+  status=0
+  "$program" compare data-demo/site.json --readings data-demo/"$run"/* --out "$out" || status=$?
+  written=$(find "$PWD/$out" -type f | sort)
+  if [ -z "$written" ]; then
+    echo "no report was written (exit status $status)" >&2
+    exit 1
+  fi
+  printf 'Exit status %d. Written:\n%s\n' "$status" "$written"
 done
