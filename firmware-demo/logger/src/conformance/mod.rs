@@ -1,14 +1,16 @@
 //! The numbers by which a logger and a desktop show that they compute the same to the last bit.
 //!
 //! Both run [`write_bits`] and compare the text. What the numbers should be is tested in the core
-//! against published values; here only sameness counts, so tank and ground are invented.
+//! against published values; here only sameness counts, so tank, ground and gauge are invented.
 
-use brimstead_core::config::Name;
-use brimstead_core::ground::{
-    BaseDrainage, BaseStiffness, Compressibility, Ground, GroundWater, Layer, Preconsolidation,
-    Profile,
-};
-use brimstead_core::load::{PlanPosition, Tank};
+mod inputs;
+
+pub use inputs::Inputs;
+
+use brimstead_core::config::COLUMN_CELLS;
+use brimstead_core::consolidation::{Boundary, Column, ColumnLayer, Factor, Loading, Stepper};
+use brimstead_core::ground::Profile;
+use brimstead_core::instrument::reduce::{VibratingWire, WireInput};
 use brimstead_core::settlement::immediate::immediate_settlement;
 use brimstead_core::settlement::primary::primary_settlement;
 use brimstead_core::stress::{Disc, Ring};
@@ -24,95 +26,17 @@ const DEPTHS_M: [f64; 4] = [0.0, 0.6, 9.7, 71.0];
 /// Wanted accuracy of a settlement, m.
 const SETTLEMENT_ERROR_M: f64 = 1e-6;
 
+/// Steps of the column after the fill, s: within a scan, an hour, a month.
+const STEPS_S: [f64; 3] = [600.0, 3600.0, 2.6e6];
+/// Depths at which the gauges sit, m.
+const GAUGE_DEPTHS_M: [f64; 3] = [2.5, 7.7, 12.1];
+
 /// Any Young's modulus, kPa: it is divided out again.
 const YOUNG_KPA: f64 = 1000.0;
 
-/// What the numbers are computed from.
-#[derive(Debug, Clone)]
-pub struct Inputs {
-    tank: Tank,
-    neighbour: PlanPosition,
-    ground: Ground,
-}
-
-impl Inputs {
-    /// The invented tank on its invented ground. `None` only when they outgrow the core's
-    /// capacities.
-    #[must_use]
-    pub fn invented() -> Option<Self> {
-        Some(Self {
-            tank: tank()?,
-            neighbour: PlanPosition { x_m: 61.3, y_m: -22.9 },
-            ground: ground()?,
-        })
-    }
-}
-
-fn tank() -> Option<Tank> {
-    Some(Tank {
-        name: Name::try_from("conformance").ok()?,
-        axis: PlanPosition { x_m: 0.1, y_m: 0.2 },
-        diameter_m: 52.3,
-        shell_height_m: 18.1,
-        loaded_depth_m: 0.0,
-        floor_pressure_kpa: 0.79,
-        pad_pressure_kpa: 21.3,
-        excavation_relief_kpa: 4.9,
-        shell_line_load_kn_m: 41.7,
-        ring_line_load_kn_m: 9.3,
-    })
-}
-
-fn ground() -> Option<Ground> {
-    let clay = Layer {
-        name: Name::try_from("clay").ok()?,
-        thickness_m: 11.7,
-        unit_weight_above_water_kn_m3: 16.3,
-        unit_weight_below_water_kn_m3: 16.9,
-        compressibility: Compressibility::Index { void_ratio: 1.62, cc: 0.71, cr: 0.083 },
-        preconsolidation: Preconsolidation::PopKpa(23.0),
-        secondary_ratio: 0.011,
-        cv_m2_per_s: 3.3e-8,
-        ch_m2_per_s: 7.1e-8,
-        permeability_m_per_s: 1.1e-9,
-        young_undrained_kpa: 11_300.0,
-        young_drained_kpa: 7_700.0,
-        poisson_drained: 0.31,
-        undrained_strength_kpa: 19.0,
-        undrained_strength_gradient_kpa_per_m: 1.7,
-        pore_pressure_response: 1.0,
-        drained: false,
-    };
-    let crust = Layer {
-        name: Name::try_from("crust").ok()?,
-        thickness_m: 1.9,
-        preconsolidation: Preconsolidation::Ocr(4.3),
-        ..clay.clone()
-    };
-    let sand = Layer {
-        name: Name::try_from("sand").ok()?,
-        thickness_m: 14.0,
-        compressibility: Compressibility::Modulus { constrained_modulus_kpa: 41_000.0 },
-        preconsolidation: Preconsolidation::Ocr(1.0),
-        drained: true,
-        ..clay.clone()
-    };
-    let mut ground = Ground {
-        layers: Default::default(),
-        water: GroundWater::Hydrostatic { water_table_m: 1.3 },
-        water_unit_weight_kn_m3: 9.81,
-        base_drainage: BaseDrainage::Drained,
-        base_stiffness: BaseStiffness::HalfSpace { young_kpa: 61_000.0, poisson: 0.29 },
-    };
-    for layer in [crust, clay, sand] {
-        ground.layers.push(layer).ok()?;
-    }
-    Some(ground)
-}
-
 /// Computes every number and hands it on with its name; `None` when the core refuses an input.
 pub fn compute(inputs: &Inputs, mut each: impl FnMut(&'static str, f64)) -> Option<()> {
-    let Inputs { tank, neighbour, ground } = inputs;
+    let Inputs { tank, neighbour, ground, .. } = inputs;
     let profile = Profile::new(ground).ok()?;
     each("tank area m2", tank.area_m2());
     each("axis distance m", tank.axis.distance_to_m(neighbour));
@@ -129,7 +53,8 @@ pub fn compute(inputs: &Inputs, mut each: impl FnMut(&'static str, f64)) -> Opti
             settlements(&profile, &disc, &undrained, r_m, &mut each)?;
         }
     }
-    Some(())
+    pore_pressures(inputs, &mut each)?;
+    gauge_pressures(inputs, &mut each)
 }
 
 fn stresses(
@@ -171,6 +96,44 @@ fn settlements(
     Some(())
 }
 
+/// The column after a sudden fill, over short steps and long ones.
+fn pore_pressures(inputs: &Inputs, each: &mut impl FnMut(&'static str, f64)) -> Option<()> {
+    let [crust, clay, sand] = inputs.ground.layers.as_slice() else { return None };
+    let layers = [crust, clay, sand].map(ColumnLayer::from);
+    let stepper = Stepper::<COLUMN_CELLS>::new(&Column {
+        layers: &layers,
+        top: Boundary::Drained,
+        base: Boundary::Closed,
+        drains: Some(&inputs.drains),
+        water_unit_weight_kn_m3: inputs.ground.water_unit_weight_kn_m3,
+    })
+    .ok()?;
+    let mut state = stepper.at_rest();
+    let mut factor = Factor::empty();
+    let increments_kpa = [117.3; COLUMN_CELLS];
+    let mut loading = Loading::Jump(&increments_kpa);
+    for step_s in STEPS_S {
+        let balance = stepper.advance(&mut state, loading, step_s, &mut factor).ok()?;
+        loading = Loading::Hold;
+        each("outflow m", balance.outflow_m());
+        each("column settlement m", stepper.settlement_m(&state, &increments_kpa));
+        for depth_m in GAUGE_DEPTHS_M {
+            let excess_kpa = stepper.excess_at_kpa(&state, depth_m).ok()?;
+            each("excess pore pressure kPa", excess_kpa);
+        }
+    }
+    Some(())
+}
+
+fn gauge_pressures(inputs: &Inputs, each: &mut impl FnMut(&'static str, f64)) -> Option<()> {
+    let gauge = VibratingWire::new(&inputs.gauge).ok()?;
+    for digits in [8932.1, 7741.9, 6120.3] {
+        let input = WireInput { digits, temperature_c: Some(12.7), barometer_kpa: Some(99.8) };
+        each("gauge pressure kPa", gauge.pressure(&input).ok()?.pressure_kpa);
+    }
+    Some(())
+}
+
 /// Writes one line a number: what it is, and its bits in hexadecimal. Numbers are not written as
 /// decimals, because formatting a float costs the logger two kilobytes of stack.
 ///
@@ -200,7 +163,7 @@ mod tests {
             let value = f64::from_bits(u64::from_str_radix(bits, 16).unwrap());
             assert!(!name.is_empty() && value.is_finite(), "{line}");
         }
-        for room in ["pressure", "disc", "ring", "primary", "immediate"] {
+        for room in ["applied", "disc", "ring", "primary", "immediate", "excess", "gauge"] {
             assert!(text.contains(room), "nothing of {room} is compared");
         }
     }
