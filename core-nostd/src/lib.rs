@@ -32,6 +32,7 @@ extern crate std;
 pub mod comparison;
 pub mod config;
 pub mod consolidation;
+pub mod expectation;
 pub mod ground;
 pub mod instrument;
 pub mod load;

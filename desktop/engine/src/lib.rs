@@ -5,6 +5,7 @@
 //! page, in JSON or in a terminal.
 
 pub mod chart;
+pub mod expect;
 pub mod report;
 pub mod series;
 pub mod site;
