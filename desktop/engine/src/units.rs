@@ -176,3 +176,54 @@ impl UnitName {
         Some((base * to.divide - to.shift) / to.multiply)
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::UnitName::{self, *};
+
+    /// NIST Special Publication 811 (2008), appendix B.8, to the digits printed there (from
+    /// memory); those marked exact there are compared to the last digit in the next test.
+    #[test]
+    fn factors_agree_with_the_published_table() {
+        let printed: [(UnitName, f64, UnitName, f64); 8] = [
+            (Psi, 6.894_757, Kpa, 5e-7),
+            (Psf, 0.047_880_26, Kpa, 5e-9),
+            (KgfCm2, 98.0665, Kpa, 5e-5),
+            (MetreWater, 9.806_65, Kpa, 5e-6),
+            (FootWater, 2.989_067, Kpa, 5e-7),
+            (InchWater, 0.249_088_9, Kpa, 5e-8),
+            (MillimetreMercury, 0.133_322_4, Kpa, 5e-8),
+            (Bar, 100.0, Kpa, 0.0),
+        ];
+        for (unit, factor, base, half_digit) in printed {
+            let ours = unit.convert(1.0, base).unwrap();
+            assert!((ours - factor).abs() <= half_digit, "{unit}: {ours} against {factor}");
+        }
+    }
+
+    #[test]
+    fn decimal_conversions_are_exact_to_the_last_digit() {
+        for (value, from, to, expected) in [
+            (12.3, Centimetre, Millimetre, 123.0),
+            (0.1, Metre, Millimetre, 100.0),
+            (1013.25, Mbar, Kpa, 101.325),
+            (1013.25, Hpa, Mbar, 1013.25),
+            (1.0, Foot, Metre, 0.3048),
+            (1.0, Inch, Millimetre, 25.4),
+            (12.0, Inch, Foot, 1.0),
+            (25.4, Millimetre, Inch, 1.0),
+            (77.0, Fahrenheit, Celsius, 25.0),
+            (298.15, Kelvin, Celsius, 25.0),
+            (25.0, Celsius, Fahrenheit, 77.0),
+        ] {
+            assert_eq!(from.convert(value, to), Some(expected), "{value} {from} to {to}");
+        }
+    }
+
+    #[test]
+    fn the_same_unit_gives_the_same_bits_and_another_dimension_nothing() {
+        assert_eq!(Psi.convert(0.1 + 0.2, Psi), Some(0.1 + 0.2));
+        assert_eq!(Metre.convert(1.0, Kpa), None);
+        assert_eq!(Celsius.convert(1.0, Digits), None);
+    }
+}
