@@ -7,6 +7,10 @@
 
 use brimstead_core::load::PlanPosition;
 use brimstead_core::math::quadrature::GaussLegendre;
+use brimstead_core::stress::layered::{
+    Accuracy, BesselBlock, ElasticBase, ElasticLayer, KernelBlock, LayeredGround, LayeredLoad,
+    LayeredMap, LayeredResponse, WaveBlock,
+};
 use brimstead_core::stress::superposition::{self, PlacedLoad, SitePoint};
 use brimstead_core::stress::{AxisPoint, AxisymmetricStress, CartesianStress, Disc, Ring};
 use divan::counter::ItemsCount;
@@ -137,4 +141,81 @@ fn principal_values(bencher: Bencher) {
         let sum = |sum: f64, s: &CartesianStress| sum + s.principal().sigma_1_kpa;
         black_box(&stresses).iter().fold(0.0, sum)
     });
+}
+
+/// A section of 200 distances by 100 depths through crust, soft clay and sand, to four radii
+/// beside and below the centre.
+mod layered_section {
+    use super::*;
+
+    const RADIUS: f64 = 10.0;
+    const LOAD: LayeredLoad = LayeredLoad::Disc { radius_m: RADIUS, pressure_kpa: 150.0 };
+
+    fn ground(gradient: f64) -> LayeredGround {
+        let layer = |thickness_m, young_kpa, poisson, young_gradient_kpa_per_m| ElasticLayer {
+            thickness_m,
+            young_kpa,
+            poisson,
+            young_gradient_kpa_per_m,
+        };
+        let layers = [layer(3.0, 20_000.0, 0.3, 0.0), layer(15.0, 4_000.0, 0.49, gradient)];
+        let sand = ElasticBase::HalfSpace { young_kpa: 40_000.0, poisson: 0.25 };
+        LayeredGround::new(&layers, sand).expect("a valid ground")
+    }
+
+    /// Set-up and all rows, the rows shared out among threads.
+    fn section(ground: &LayeredGround, accuracy: Accuracy, threads: usize) -> f64 {
+        let radii: Vec<f64> = (0..200).map(|i| 4.0 * RADIUS * f64::from(i) / 199.0).collect();
+        let depths: Vec<f64> = (0..100).map(|i| 4.0 * RADIUS * f64::from(i) / 99.0).collect();
+        let size = ground.map_size(&LOAD, &radii, &depths, accuracy).expect("a map that fits");
+        let mut waves = vec![WaveBlock::default(); size.waves];
+        let mut bessel = vec![BesselBlock::default(); size.bessel];
+        let map = ground
+            .map(&LOAD, &radii, &depths, accuracy, (&mut waves, &mut bessel))
+            .expect("a map that fits");
+        std::thread::scope(|scope| {
+            let part = |first| {
+                let map = &map;
+                scope.spawn(move || rows(map, size.waves, (first, threads)))
+            };
+            let parts: Vec<_> = (0..threads).map(part).collect();
+            parts.into_iter().map(|part| part.join().expect("rows")).sum()
+        })
+    }
+
+    fn rows(map: &LayeredMap<'_>, waves: usize, (first, step): (usize, usize)) -> f64 {
+        let mut scratch = vec![KernelBlock::default(); waves];
+        let mut out = vec![LayeredResponse::default(); 200];
+        let mut sum = 0.0;
+        for row in (first..map.rows()).step_by(step) {
+            map.row(row, &mut scratch, &mut out).expect("a row of the map");
+            sum += out.iter().map(|r| r.stress.sigma_z_kpa).sum::<f64>();
+        }
+        sum
+    }
+
+    #[divan::bench(sample_count = 5)]
+    fn map_accuracy_two_threads() -> f64 {
+        section(&ground(0.0), Accuracy::Map, 2)
+    }
+
+    #[divan::bench(sample_count = 5)]
+    fn map_accuracy_one_thread() -> f64 {
+        section(&ground(0.0), Accuracy::Map, 1)
+    }
+
+    #[divan::bench(sample_count = 5)]
+    fn map_accuracy_modulus_gradient_two_threads() -> f64 {
+        section(&ground(300.0), Accuracy::Map, 2)
+    }
+
+    #[divan::bench(sample_count = 3)]
+    fn reference_accuracy_two_threads() -> f64 {
+        section(&ground(0.0), Accuracy::Reference, 2)
+    }
+
+    #[divan::bench]
+    fn single_point() -> LayeredResponse {
+        black_box(ground(0.0)).response_at(&LOAD, 7.0, 8.0, Accuracy::Reference).expect("in range")
+    }
 }

@@ -4,6 +4,9 @@
 pub const NAME_BYTES: usize = 32;
 /// Layers of a ground profile.
 pub const MAX_LAYERS: usize = 16;
+/// Sublayers that layers with a modulus gradient are divided into for elastic stresses; all of a
+/// ground together.
+pub const MAX_ELASTIC_SUBLAYERS: usize = 160;
 /// Points of a measured pore-pressure profile.
 pub const MAX_PROFILE_POINTS: usize = 16;
 /// Tanks that load the site, neighbours included.

@@ -21,7 +21,7 @@ use brimstead_core::stress::{
 use brimstead_core::working::{Step, Working};
 use proptest::prelude::*;
 use proptest::test_runner::{Config, RngSeed};
-use reference_table::{Row, Worst, elastic};
+use reference_table::{Row, Worst, elastic, printed_tolerance};
 
 /// Against 17-digit tables, of q (stress) or q R / E (displacement). Double rounding of inputs and
 /// results alone takes a few 1e-16; one digit is left for the summation.
@@ -184,12 +184,6 @@ fn two_tanks_agree_with_every_row_of_the_exact_table() {
         }
     }
     worst.assert_below(TABLE_TOLERANCE);
-}
-
-/// Half a unit of the last printed digit, with a hair for the decimal conversion.
-fn printed_tolerance(text: &str) -> f64 {
-    let decimals = text.split_once('.').map_or(0, |(_, fraction)| fraction.len());
-    0.5001 * 10_f64.powi(-i32::try_from(decimals).unwrap())
 }
 
 #[test]

@@ -30,6 +30,18 @@ impl<const N: usize> GaussLegendre<N> {
         rule
     }
 
+    /// Nodes on -1..1, rising.
+    #[must_use]
+    pub fn nodes(&self) -> &[f64; N] {
+        &self.nodes
+    }
+
+    /// Weights; their sum is 2.
+    #[must_use]
+    pub fn weights(&self) -> &[f64; N] {
+        &self.weights
+    }
+
     /// Nodes and weights mapped to the interval from `a` to `b`.
     pub fn on(&self, a: f64, b: f64) -> impl Iterator<Item = (f64, f64)> + '_ {
         let (half, middle) = (0.5 * (b - a), 0.5 * (a + b));

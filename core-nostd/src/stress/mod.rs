@@ -4,11 +4,12 @@
 //! |---|---|
 //! | uniform pressure on a circle (liquid, floor, pad) | [`disc`] |
 //! | line load on a circle (shell, ring wall) | [`ring`] |
+//! | disc or ring on layered ground | [`layered`] |
 //! | mean pressure under a stiff plate (foundation block, test plate) | [`rigid`] |
 //! | several discs and rings at their places in plan | [`superposition`] |
 //!
 //! All results are *increments* caused by the load; the stress that was there before is not in
-//! them. The ground is a homogeneous, isotropic, linear elastic half-space, weightless, with the
+//! them. But for [`layered`], the ground is a homogeneous, isotropic, linear elastic half-space, weightless, with the
 //! load on its surface; the load carries no shear. [`westergaard`] is the limit of a ground that
 //! cannot strain sideways.
 //!
@@ -21,6 +22,7 @@ mod integrals;
 mod surface;
 
 pub mod disc;
+pub mod layered;
 pub mod rigid;
 pub mod ring;
 pub mod superposition;
@@ -119,6 +121,27 @@ pub enum StressError {
         /// Radius of the edge, m.
         radius_m: f64,
     },
+    /// More layers, or sublayers of layers with a modulus gradient, than there is room for.
+    TooManyLayers {
+        /// Layers given.
+        given: usize,
+        /// Room.
+        most: usize,
+    },
+    /// A rigid base without ground on it.
+    NoGround,
+    /// The point lies inside the rigid base.
+    BelowRigidBase {
+        /// Depth of the point, m.
+        depth_m: f64,
+        /// Depth of the base, m.
+        base_m: f64,
+    },
+    /// The integral would need more panels than are allowed.
+    TooMuchWork {
+        /// Panels allowed.
+        most: usize,
+    },
     /// As many results as points are needed.
     LengthsDiffer {
         /// Points given.
@@ -150,6 +173,22 @@ impl fmt::Display for StressError {
                 "the point lies on the edge of the load (radius {radius_m} m, depth 0), where a \
                  line load or a rigid plate gives no finite value; ask for a point below or \
                  beside it"
+            ),
+            Self::TooManyLayers { given, most } => {
+                write!(f, "{given} layers were given where at most {most} are possible; merge some")
+            }
+            Self::NoGround => {
+                f.write_str("there is no ground above the rigid base; give at least one layer")
+            }
+            Self::BelowRigidBase { depth_m, base_m } => write!(
+                f,
+                "depth {depth_m} m is below the rigid base at {base_m} m, where no stress is \
+                 defined; ask above it or describe the ground further down"
+            ),
+            Self::TooMuchWork { most } => write!(
+                f,
+                "the layered integral needs more than {most} panels: the top layer is very thin \
+                 for the radius, or the point very far away; merge the thin layer with the next"
             ),
             Self::LengthsDiffer { points, results } => {
                 write!(f, "{points} points were given with room for {results} results")

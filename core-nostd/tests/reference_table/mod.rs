@@ -83,3 +83,9 @@ impl Worst {
         println!("largest difference {:.1e} at {}", self.difference, self.place);
     }
 }
+
+/// Half a unit of the last printed digit, with a hair for the decimal conversion.
+pub fn printed_tolerance(text: &str) -> f64 {
+    let decimals = text.split_once('.').map_or(0, |(_, fraction)| fraction.len());
+    0.5001 * 10_f64.powi(-i32::try_from(decimals).unwrap())
+}
