@@ -11,5 +11,6 @@ pub mod import;
 pub mod report;
 pub mod series;
 pub mod site;
+pub mod store;
 pub mod time;
 pub mod units;

@@ -1,7 +1,7 @@
 //! What must hold between the entries of a site file.
 
 mod ground;
-mod instruments;
+pub(crate) mod instruments;
 mod load;
 mod readings;
 

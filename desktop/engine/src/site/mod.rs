@@ -9,7 +9,7 @@
 //! `site.schema.json` comes from the same declarations ([`schema`]).
 
 pub mod bounds;
-mod check;
+pub(crate) mod check;
 mod convert;
 mod model;
 mod problem;
@@ -71,6 +71,15 @@ pub fn read(path: &Path) -> Result<SiteFile, SiteProblems> {
 /// # Errors
 /// All problems of the text, by line.
 pub fn parse(text: &str, file: &str) -> Result<SiteFile, SiteProblems> {
+    document(text, file, core_checks)
+}
+
+/// Reads a document of its kind; `last_word` checks what could be read without a problem.
+pub(crate) fn document<T: Record>(
+    text: &str,
+    file: &str,
+    last_word: impl FnOnce(&Reading<'_>, &T),
+) -> Result<T, SiteProblems> {
     // Some editors begin a UTF-8 file with a byte order mark.
     let text = text.strip_prefix('\u{feff}').unwrap_or(text);
     let parsed = parse_to_ast(text, &CollectOptions::default(), &strict()).map_err(|error| {
@@ -90,13 +99,13 @@ pub fn parse(text: &str, file: &str) -> Result<SiteFile, SiteProblems> {
         return Err(alone(file, 1, 1, "an empty file".to_owned(), allowed, ""));
     };
     let reading = Reading::new(text);
-    let site = SiteFile::read_record(&Node::new(&reading, &root, String::new()));
-    if let Some(site) = site.as_ref().filter(|_| reading.is_clean()) {
-        core_checks(&reading, site);
+    let read = T::read_record(&Node::new(&reading, &root, String::new()));
+    if let Some(read) = read.as_ref().filter(|_| reading.is_clean()) {
+        last_word(&reading, read);
     }
     let (problems, not_cross_checked) = reading.into_problems();
-    match site {
-        Some(site) if problems.is_empty() => Ok(site),
+    match read {
+        Some(read) if problems.is_empty() => Ok(read),
         _ => Err(SiteProblems { file: file.to_owned(), problems, not_cross_checked }),
     }
 }

@@ -48,7 +48,7 @@ impl fmt::Display for SiteProblems {
         let noun = if count == 1 { "problem" } else { "problems" };
         writeln!(
             f,
-            "{}: {count} {noun}; the site file is not used until all are put right.",
+            "{}: {count} {noun}; the file is not used until all are put right.",
             self.file
         )?;
         for problem in &self.problems {

@@ -166,7 +166,7 @@ fn master(reading: &Reading<'_>, instruments: &[Instrument]) {
 }
 
 /// Limits of one instrument or kind: each given once, and in the order watch, review, stop.
-fn limits(reading: &Reading<'_>, path: &str, limits: &[Limit]) {
+pub(crate) fn limits(reading: &Reading<'_>, path: &str, limits: &[Limit]) {
     for (index, limit) in limits.iter().enumerate() {
         let here = format!("{path}[{index}]");
         limit_itself(reading, &here, limit);
@@ -265,7 +265,7 @@ fn out_of_order(lower: &Limit, upper: &Limit) -> Option<(f64, f64)> {
 }
 
 /// Linear between points, level beyond the ends.
-fn on_curve(points: &[(f64, f64)], at: f64) -> f64 {
+pub(crate) fn on_curve(points: &[(f64, f64)], at: f64) -> f64 {
     let after = points.partition_point(|&(x, _)| x < at);
     match (after.checked_sub(1).and_then(|before| points.get(before)), points.get(after)) {
         (Some(&(x0, y0)), Some(&(x1, y1))) if x1 > x0 => y0 + (y1 - y0) * (at - x0) / (x1 - x0),

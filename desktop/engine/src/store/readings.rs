@@ -1,0 +1,262 @@
+//! Readings out of the store.
+
+use super::error::Fault;
+use crate::site::reader::Choice;
+use crate::units::UnitName;
+use rusqlite::{Connection, OptionalExtension, Row};
+use serde::Serialize;
+use std::collections::BTreeMap;
+
+/// Length of an hour, s.
+const HOUR_S: i64 = 3600;
+
+/// Readings of one channel, as read from one file.
+#[derive(Debug, Clone, PartialEq)]
+pub struct RawSeries {
+    /// What gives them: an instrument, `barometer`, or a temperature.
+    pub channel: String,
+    /// Unit they are written in.
+    pub unit: UnitName,
+    /// The readings.
+    pub readings: Vec<RawReading>,
+}
+
+/// One reading, as read.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct RawReading {
+    /// When it was measured.
+    pub time_s: i64,
+    /// The value, in the unit of the series.
+    pub value: f64,
+    /// Line in the file.
+    pub line: u32,
+}
+
+/// A reading in the store.
+#[derive(Debug, Clone, Copy, PartialEq, Serialize)]
+pub struct StoredReading {
+    /// When it was measured.
+    pub time_s: i64,
+    /// The value as read.
+    pub value: f64,
+    /// Unit as read.
+    pub unit: UnitName,
+    /// Number of the file it came from.
+    pub file: i64,
+    /// Line in that file.
+    pub line: u32,
+}
+
+/// A reading beside the one that counts.
+#[derive(Debug, Clone, Copy, PartialEq, Serialize)]
+pub struct ReadingConflict {
+    /// The reading that counts: the one that was stored first.
+    pub held: StoredReading,
+    /// The reading that differs.
+    pub other: StoredReading,
+}
+
+/// What is held of a channel.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct ChannelState {
+    /// Its name.
+    pub channel: String,
+    /// How many readings.
+    pub readings: u64,
+    /// Time of the first.
+    pub first_s: i64,
+    /// The newest.
+    pub latest: StoredReading,
+}
+
+/// The readings of one hour in one unit.
+#[derive(Debug, Clone, Copy, PartialEq, Serialize)]
+pub struct HourSummary {
+    /// Begin of the hour.
+    pub start_s: i64,
+    /// Unit as read.
+    pub unit: UnitName,
+    /// How many readings.
+    pub count: u64,
+    /// The lowest.
+    pub lowest: f64,
+    /// When it was measured.
+    pub lowest_s: i64,
+    /// The highest.
+    pub highest: f64,
+    /// When it was measured.
+    pub highest_s: i64,
+}
+
+impl HourSummary {
+    pub(super) fn of(unit: UnitName, reading: &RawReading) -> Self {
+        let RawReading { time_s, value, .. } = *reading;
+        Self {
+            start_s: time_s.div_euclid(HOUR_S) * HOUR_S,
+            unit,
+            count: 1,
+            lowest: value,
+            lowest_s: time_s,
+            highest: value,
+            highest_s: time_s,
+        }
+    }
+
+    pub(super) fn hour(&self) -> i64 {
+        self.start_s / HOUR_S
+    }
+
+    pub(super) fn holds(&self, time_s: i64) -> bool {
+        time_s.div_euclid(HOUR_S) == self.hour()
+    }
+
+    pub(super) fn include(&mut self, reading: &RawReading) {
+        self.count += 1;
+        if reading.value < self.lowest {
+            (self.lowest, self.lowest_s) = (reading.value, reading.time_s);
+        }
+        if reading.value > self.highest {
+            (self.highest, self.highest_s) = (reading.value, reading.time_s);
+        }
+    }
+}
+
+/// The units by their numbers; they are few.
+struct Units(BTreeMap<i64, UnitName>);
+
+impl Units {
+    fn of(connection: &Connection) -> Result<Self, Fault> {
+        let mut statement = connection.prepare_cached("SELECT id, word FROM unit")?;
+        let mut rows = statement.query([])?;
+        let mut units = BTreeMap::new();
+        while let Some(row) = rows.next()? {
+            let word: String = row.get(1)?;
+            let unit = UnitName::ALL.iter().find(|(_, known)| *known == word);
+            let (unit, _) = unit.ok_or_else(|| Fault::Entry(format!("unit \"{word}\"")))?;
+            units.insert(row.get(0)?, *unit);
+        }
+        Ok(Self(units))
+    }
+
+    fn by_number(&self, number: i64) -> Result<UnitName, Fault> {
+        self.0.get(&number).copied().ok_or_else(|| Fault::Entry(format!("unit number {number}")))
+    }
+
+    /// Time, value, unit, file and line from a column on.
+    fn reading(&self, row: &Row<'_>, from: usize) -> Result<StoredReading, Fault> {
+        Ok(StoredReading {
+            time_s: row.get(from)?,
+            value: row.get(from + 1)?,
+            unit: self.by_number(row.get(from + 2)?)?,
+            file: row.get(from + 3)?,
+            line: row.get(from + 4)?,
+        })
+    }
+}
+
+const READING: &str = "time_s, value, unit, file, line";
+
+fn number_of(connection: &Connection, channel: &str) -> Result<Option<i64>, Fault> {
+    let mut statement = connection.prepare_cached("SELECT id FROM channel WHERE name = ?1")?;
+    Ok(statement.query_row([channel], |row| row.get(0)).optional()?)
+}
+
+pub(super) fn in_window(
+    connection: &Connection,
+    channel: &str,
+    from_s: i64,
+    to_s: i64,
+) -> Result<Vec<StoredReading>, Fault> {
+    let Some(number) = number_of(connection, channel)? else { return Ok(Vec::new()) };
+    let units = Units::of(connection)?;
+    let mut statement = connection.prepare_cached(&format!(
+        "SELECT {READING} FROM reading
+         WHERE channel = ?1 AND time_s BETWEEN ?2 AND ?3 ORDER BY time_s"
+    ))?;
+    let mut rows = statement.query((number, from_s, to_s))?;
+    let mut readings = Vec::new();
+    while let Some(row) = rows.next()? {
+        readings.push(units.reading(row, 0)?);
+    }
+    Ok(readings)
+}
+
+pub(super) fn latest(
+    connection: &Connection,
+    channel: &str,
+) -> Result<Option<StoredReading>, Fault> {
+    let Some(number) = number_of(connection, channel)? else { return Ok(None) };
+    let units = Units::of(connection)?;
+    let mut statement = connection.prepare_cached(&format!(
+        "SELECT {READING} FROM reading WHERE channel = ?1 ORDER BY time_s DESC LIMIT 1"
+    ))?;
+    let mut rows = statement.query([number])?;
+    rows.next()?.map(|row| units.reading(row, 0)).transpose()
+}
+
+pub(super) fn channels(connection: &Connection) -> Result<Vec<ChannelState>, Fault> {
+    // Counted by hours, so that it does not take longer with every year.
+    let mut statement = connection.prepare_cached(
+        "SELECT name, sum(count), (SELECT min(time_s) FROM reading WHERE channel = channel.id)
+         FROM channel JOIN reading_hour ON channel = channel.id GROUP BY channel.id ORDER BY name",
+    )?;
+    let mut rows = statement.query([])?;
+    let mut states = Vec::new();
+    while let Some(row) = rows.next()? {
+        let (channel, count): (String, i64) = (row.get(0)?, row.get(1)?);
+        if let Some(latest) = latest(connection, &channel)? {
+            let first_s = row.get(2)?;
+            states.push(ChannelState { channel, readings: count.unsigned_abs(), first_s, latest });
+        }
+    }
+    Ok(states)
+}
+
+pub(super) fn hours(
+    connection: &Connection,
+    channel: &str,
+    from_s: i64,
+    to_s: i64,
+) -> Result<Vec<HourSummary>, Fault> {
+    let Some(number) = number_of(connection, channel)? else { return Ok(Vec::new()) };
+    let units = Units::of(connection)?;
+    let mut statement = connection.prepare_cached(
+        "SELECT hour, unit, count, lowest, lowest_s, highest, highest_s FROM reading_hour
+         WHERE channel = ?1 AND hour BETWEEN ?2 AND ?3 ORDER BY hour, unit",
+    )?;
+    let hour = |time_s: i64| time_s.div_euclid(HOUR_S);
+    let mut rows = statement.query((number, hour(from_s), hour(to_s)))?;
+    let mut summaries = Vec::new();
+    while let Some(row) = rows.next()? {
+        summaries.push(HourSummary {
+            start_s: row.get::<_, i64>(0)? * HOUR_S,
+            unit: units.by_number(row.get(1)?)?,
+            count: row.get::<_, i64>(2)?.unsigned_abs(),
+            lowest: row.get(3)?,
+            lowest_s: row.get(4)?,
+            highest: row.get(5)?,
+            highest_s: row.get(6)?,
+        });
+    }
+    Ok(summaries)
+}
+
+pub(super) fn conflicts(
+    connection: &Connection,
+    channel: &str,
+) -> Result<Vec<ReadingConflict>, Fault> {
+    let units = Units::of(connection)?;
+    let mut statement = connection.prepare_cached(
+        "SELECT h.time_s, h.value, h.unit, h.file, h.line, o.time_s, o.value, o.unit, o.file, o.line
+         FROM reading_conflict AS o
+         JOIN reading AS h ON h.channel = o.channel AND h.time_s = o.time_s
+         JOIN channel ON channel.id = o.channel
+         WHERE channel.name = ?1 ORDER BY o.time_s, o.id",
+    )?;
+    let mut rows = statement.query([channel])?;
+    let mut found = Vec::new();
+    while let Some(row) = rows.next()? {
+        found.push(ReadingConflict { held: units.reading(row, 0)?, other: units.reading(row, 5)? });
+    }
+    Ok(found)
+}

@@ -1,0 +1,10 @@
+//! The store, from outside.
+
+mod decisions;
+mod history;
+mod import;
+mod limits;
+mod open;
+mod processes;
+mod sites;
+mod support;
