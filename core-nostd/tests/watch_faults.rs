@@ -4,6 +4,7 @@
 #![allow(
     clippy::unwrap_used,
     clippy::indexing_slicing,
+    clippy::integer_division,
     reason = "a test may panic; clippy excuses only functions marked as tests"
 )]
 
@@ -61,7 +62,12 @@ impl Line {
     }
 
     fn judge(&mut self, reading: Reading, load_kpa: Option<f64>) -> Judgement {
-        let observation = Observation { reading, applied_pressure_kpa: load_kpa, expected: None };
+        let observation = Observation {
+            reading,
+            applied_pressure_kpa: load_kpa,
+            expected: None,
+            hold_since_s: None,
+        };
         let (state, judgement) = self.watcher.judge(&self.state, &observation, &[]).unwrap();
         self.state = state;
         judgement
@@ -251,7 +257,12 @@ fn a_record_that_comes_late_gives_the_triggers_it_would_have_given_in_time() {
     let (mut judged, mut refused) = (Vec::new(), 0);
     for (number, value) in late {
         let reading = Reading::new(START_S + number * SCAN_S, value);
-        let observation = Observation { reading, applied_pressure_kpa: Some(50.0), expected: None };
+        let observation = Observation {
+            reading,
+            applied_pressure_kpa: Some(50.0),
+            expected: None,
+            hold_since_s: None,
+        };
         match watcher.judge(&state, &observation, &[]) {
             Ok((next, judgement)) => {
                 state = next;
@@ -278,6 +289,7 @@ fn a_clock_set_back_to_1970_is_refused_and_a_clock_set_right_goes_on() {
         reading: Reading::new(12, 80.0),
         applied_pressure_kpa: Some(50.0),
         expected: None,
+        hold_since_s: None,
     };
     assert!(line.watcher.judge(&line.state, &reset, &[]).is_err());
     assert!(line.checker.observe(&line.channel, reset.reading, None).is_err());

@@ -14,7 +14,7 @@ use brimstead_core::quantity::Expected;
 use brimstead_core::watch::{
     Basis, Curve, Direction, Inhibition, Judgement, LimitError, LimitWarning, Limits, NotReady,
     Observation, Outcome, Persistence, Post, RateWindow, Rule, ScanSummary, Site, SiteError,
-    Thresholds, Trigger, Unknown, WatchState, Watcher,
+    Thresholds, Trigger, Unknown, WatchState, Watcher, When,
 };
 use brimstead_core::working::{Step, Working};
 
@@ -37,7 +37,12 @@ fn watcher(rules: &[Rule]) -> Watcher {
 }
 
 fn seen(time_s: i64, value: f64) -> Observation {
-    Observation { reading: Reading::new(time_s, value), applied_pressure_kpa: None, expected: None }
+    Observation {
+        reading: Reading::new(time_s, value),
+        applied_pressure_kpa: None,
+        expected: None,
+        hold_since_s: None,
+    }
 }
 
 /// Judges values one after another at equal spacing.
@@ -399,6 +404,64 @@ fn a_rate_rule_waits_for_its_window_and_blocks_until_then() {
 }
 
 #[test]
+fn a_rule_for_holds_waits_for_its_time_and_keeps_its_trigger_through_the_next_rise() {
+    let when = When::InHold { after_s: 1800 };
+    let watcher = watcher(&[Rule { when, ..fixed(thresholds(50.0, 60.0, 70.0)) }]);
+    let at = |minute: i64, value, hold_minute: Option<i64>| Observation {
+        hold_since_s: hold_minute.map(|minute| minute * MINUTE),
+        ..seen(minute * MINUTE, value)
+    };
+    let judged = run_all(
+        &watcher,
+        &[
+            at(0, 55.0, None),
+            at(15, 55.0, Some(0)),
+            at(30, 55.0, Some(0)),
+            at(45, 10.0, None),
+            at(60, 10.0, Some(50)),
+            at(80, 10.0, Some(50)),
+        ],
+    );
+    assert_eq!(triggers(&judged), [Normal, Normal, Watch, Watch, Watch, Normal]);
+    assert_eq!(judged[0].not_ready, Some(NotReady::HoldNotJudged));
+    assert_eq!(judged[1].not_ready, Some(NotReady::HoldNotJudged));
+    assert!(judged[5].ready_for_next_rise());
+}
+
+#[test]
+fn time_to_the_limit_is_margin_over_rate_while_the_reading_nears_it() {
+    let rate_window = Some(RateWindow { window_s: 86_400, min_span_s: 3600, min_readings: 3 });
+    let watcher =
+        Watcher::new(&Limits { rate_window, ..limits(&[fixed(thresholds(50.0, 60.0, 70.0))]) });
+    let observe = |per_day: f64| {
+        let observations: Vec<_> =
+            (0..=12).map(|hour| seen(hour * 3600, 30.0 + per_day * hour as f64 / 24.0)).collect();
+        run_all(watcher.as_ref().unwrap(), &observations)[12].governing.unwrap()
+    };
+    // 16 kPa are left after half a day at 8 kPa/day.
+    assert_relative_eq!(observe(8.0).days_to_next.unwrap(), 2.0, max_relative = 1e-9);
+    assert_eq!(observe(-8.0).days_to_next, None);
+    assert_eq!(observe(0.0).days_to_next, None);
+}
+
+#[test]
+fn new_limits_do_not_lower_a_trigger_until_a_good_reading_clears_them() {
+    let old = watcher(&[fixed(thresholds(50.0, 60.0, 70.0)), band_rule()]);
+    let wide = watcher(&[fixed(thresholds(80.0, 90.0, 100.0))]);
+    let (state, first) = old.judge(&WatchState::default(), &seen(0, 75.0), &[]).unwrap();
+    assert_eq!((first.trigger, first.confirmed), (Stop, false));
+    let state = wide.take_over(&state);
+    assert_eq!(state.trigger(), Stop);
+    let dead = Observation { reading: Reading::absent(900, Doubt::NoAnswer), ..seen(900, 0.0) };
+    let (state, held) = wide.judge(&state, &dead, &[]).unwrap();
+    assert_eq!((held.trigger, held.since_s), (Stop, 0));
+    let (state, _) = wide.judge(&state, &seen(1800, 85.0), &[]).unwrap();
+    assert_eq!(state.trigger(), Watch);
+    let (state, _) = wide.judge(&state, &seen(2700, 75.0), &[]).unwrap();
+    assert_eq!(state.trigger(), Normal);
+}
+
+#[test]
 fn the_highest_rule_counts_and_the_nearest_limit_governs() {
     let near = fixed(thresholds(50.0, 60.0, 70.0));
     let far = fixed(thresholds(80.0, 90.0, 100.0));
@@ -502,6 +565,12 @@ fn curves_that_make_no_sense_are_refused() {
     assert_eq!(refused(crossing), LimitError::Order { rule: 0 });
     let negative = Curve { pressure_kpa: list(&[-50.0, 100.0, 150.0]), ..curve() };
     assert!(matches!(refused(negative), LimitError::OutOfRange(_)));
+}
+
+#[test]
+fn a_curve_that_begins_above_zero_load_is_flagged() {
+    let found: Vec<_> = curve_watcher().warnings().collect();
+    assert_eq!(found, [LimitWarning::CurveStartsLate { rule: 0, pressure_kpa: 50.0 }]);
 }
 
 #[test]

@@ -13,7 +13,7 @@ use brimstead_core::instrument::{DataState, FixedList, OutOfOrder, Reading};
 use brimstead_core::quantity::Expected;
 use brimstead_core::watch::{
     Basis, Curve, Direction, Limits, Observation, Persistence, Post, RateWindow, Rule, Site,
-    Thresholds, Trigger, WatchState, Watcher,
+    Thresholds, Trigger, WatchState, Watcher, When,
 };
 use proptest::prelude::*;
 
@@ -44,10 +44,12 @@ fn observation() -> impl Strategy<Value = (i64, Observation)> {
             likely,
             high,
         }));
-    (step, value, state(), prop::option::of(wild()), expected).prop_map(
-        |(step_s, value, state, applied_pressure_kpa, expected)| {
+    let hold =
+        prop::option::of(prop_oneof![8 => 1_749_990_000..1_750_100_000_i64, 1 => any::<i64>()]);
+    (step, value, state(), prop::option::of(wild()), expected, hold).prop_map(
+        |(step_s, value, state, applied_pressure_kpa, expected, hold_since_s)| {
             let reading = Reading { time_s: 0, value, state, doubt: None };
-            (step_s, Observation { reading, applied_pressure_kpa, expected })
+            (step_s, Observation { reading, applied_pressure_kpa, expected, hold_since_s })
         },
     )
 }
@@ -99,8 +101,12 @@ fn mirrored(sizes: &Thresholds) -> Thresholds {
 fn rule() -> impl Strategy<Value = Rule> {
     let direction =
         prop::sample::select(vec![Direction::Above, Direction::Below, Direction::Either]);
-    (0..4_u8, sizes(), direction, 0.0..4.9_f64, persistence(), persistence()).prop_map(
-        |(kind, sizes, direction, hysteresis, raising, clearing)| {
+    let when = prop_oneof![
+        3 => Just(When::Always),
+        1 => (0..20_000_i64).prop_map(|after_s| When::InHold { after_s }),
+    ];
+    (0..4_u8, sizes(), direction, 0.0..4.9_f64, persistence(), persistence(), when).prop_map(
+        |(kind, sizes, direction, hysteresis, raising, clearing, when)| {
             let signed = if direction == Direction::Below { mirrored(&sizes) } else { sizes };
             let basis = match kind {
                 0 => Basis::Band { multiples: sizes, smallest_half_band: 0.5 },
@@ -108,7 +114,7 @@ fn rule() -> impl Strategy<Value = Rule> {
                 2 => Basis::Rate { per_day: signed },
                 _ => Basis::Fixed { values: signed },
             };
-            Rule { basis, direction, hysteresis, raising, clearing }
+            Rule { basis, direction, hysteresis, raising, clearing, when }
         },
     )
 }
@@ -133,7 +139,7 @@ fn limits() -> impl Strategy<Value = Limits> {
 
 proptest! {
     #![proptest_config(ProptestConfig {
-        cases: 400,
+        cases: 256,
         failure_persistence: None,
         ..ProptestConfig::default()
     })]
@@ -227,8 +233,7 @@ proptest! {
             let observation = Observation {
                 reading: Reading::new(time_s, values[at]),
                 applied_pressure_kpa: None,
-                expected: None,
-            };
+                expected: None, hold_since_s: None };
             let (next, judgement) = watcher.judge(&state, &observation, &[]).unwrap();
             prop_assert_eq!(judgement.trigger, model, "reading {} of {:?}", at, values);
             state = next;
@@ -255,8 +260,7 @@ proptest! {
         let observation = Observation {
             reading: Reading::new(time_s, 120.0 + by),
             applied_pressure_kpa: None,
-            expected: None,
-        };
+            expected: None, hold_since_s: None };
         let (_, judgement) = watcher.judge(&state, &observation, &[]).unwrap();
         prop_assert_eq!(judgement.trigger, Trigger::Stop);
     }
@@ -364,6 +368,7 @@ proptest! {
             hysteresis,
             raising: persistence,
             clearing: persistence,
+            when: When::InHold { after_s: seconds },
         };
         let some: Vec<f64> = [a, b, c].into_iter().flatten().collect();
         let limits = Limits {

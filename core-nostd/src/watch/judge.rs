@@ -21,6 +21,8 @@ pub struct Observation {
     pub applied_pressure_kpa: Option<f64>,
     /// The expected band at that instant; none when the load is unknown.
     pub expected: Option<Expected>,
+    /// Since when the liquid level has stood still; none while it moves or is not trusted.
+    pub hold_since_s: Option<i64>,
 }
 
 /// What is remembered of one instrument. Plain data: store it, send it, copy it. Starts as
@@ -74,6 +76,10 @@ pub struct Governing {
     pub next: Trigger,
     /// Margin to that limit; negative beyond it.
     pub margin_to_next: Margin,
+    /// Days until the reading is at that limit if load and rate stay as they are; none when the
+    /// reading does not move towards it, is beyond it, or has no rate. Shorter in truth wherever
+    /// the rate grows.
+    pub days_to_next: Option<f64>,
 }
 
 /// Why an instrument does not support the next rise.
@@ -106,6 +112,8 @@ pub enum NotReady {
     },
     /// The load is above the last point of the limit curve.
     BeyondCurve,
+    /// A rule that counts in a hold has not been judged in the present one.
+    HoldNotJudged,
     /// Inhibited.
     Inhibited {
         /// Until when.
@@ -126,7 +134,8 @@ impl NotReady {
             Self::OutOfOrder => 6,
             Self::Unknown { .. } => 7,
             Self::BeyondCurve => 8,
-            Self::Inhibited { .. } => 9,
+            Self::HoldNotJudged => 9,
+            Self::Inhibited { .. } => 10,
         }
     }
 }
@@ -145,6 +154,9 @@ impl fmt::Display for NotReady {
             Self::Unknown { unknown } => write!(f, "{unknown}, so a limit could not be judged."),
             Self::BeyondCurve => {
                 f.write_str("the load is above the last point of the limit curve. Set its limits.")
+            }
+            Self::HoldNotJudged => {
+                f.write_str("a limit that counts in a hold has not been judged in this one yet.")
             }
             Self::Inhibited { .. } => f.write_str("the alarm is inhibited. Look at it by hand."),
         }
@@ -220,6 +232,7 @@ pub struct Watcher {
 struct Findings {
     assessed: [Option<Assessment>; MAX_RULES],
     unknown: Option<Unknown>,
+    idle: bool,
 }
 
 impl Watcher {
@@ -229,6 +242,18 @@ impl Watcher {
     /// The first thing that makes them unusable.
     pub fn new(limits: &Limits) -> Result<Self, LimitError> {
         Ok(Self { limits: *limits, warnings: limits.check()? })
+    }
+
+    /// A state that goes on under these limits, which replace others. The trigger stands, however
+    /// wide the new limits are, until a good reading falls through their clearing value; readings
+    /// counted against the old limits do not count against the new.
+    #[must_use]
+    pub fn take_over(&self, state: &WatchState) -> WatchState {
+        let mut rules = [RuleState::default(); MAX_RULES];
+        for (slot, _) in rules.iter_mut().zip(self.limits.rules.as_slice()) {
+            *slot = RuleState::taking_over(state.trigger, is_confirmed(state));
+        }
+        WatchState { rules, ..*state }
     }
 
     /// Limits that are allowed and unwise.
@@ -253,7 +278,7 @@ impl Watcher {
         applied_pressure_kpa: Option<f64>,
         expected: Option<Expected>,
     ) -> Result<[Option<LimitsNow>; 2], Unknown> {
-        let view = View { reading: None, rate: None, applied_pressure_kpa, expected };
+        let view = View { reading: None, rate: None, applied_pressure_kpa, expected, hold_s: None };
         match self.limits.rules.as_slice().get(rule) {
             Some(rule) => rule.limits_now(&self.limits, &view),
             None => Ok([None, None]),
@@ -299,6 +324,7 @@ impl Watcher {
             rate,
             applied_pressure_kpa: observation.applied_pressure_kpa,
             expected: observation.expected.filter(Expected::is_band),
+            hold_s: observation.hold_since_s.map(|since_s| time_s.saturating_sub(since_s)),
         };
         let good = observation.reading.good().is_some();
         let findings = self.step_rules(&mut next, time_s, good, &view);
@@ -326,10 +352,15 @@ impl Watcher {
     }
 
     fn step_rules(&self, next: &mut WatchState, time_s: i64, good: bool, view: &View) -> Findings {
-        let mut findings = Findings { assessed: [None; MAX_RULES], unknown: None };
+        let mut findings = Findings { assessed: [None; MAX_RULES], unknown: None, idle: false };
         let rules = self.limits.rules.as_slice().iter();
         let slots = next.rules.iter_mut().zip(findings.assessed.iter_mut());
         for (rule, (rule_state, slot)) in rules.zip(slots) {
+            if !rule.counts(view) {
+                *rule_state = rule_state.idle();
+                findings.idle = true;
+                continue;
+            }
             match rule.assess(&self.limits, view) {
                 Ok(found) => {
                     *rule_state = rule_state.after(rule, time_s, good, &found);
@@ -359,7 +390,7 @@ impl Watcher {
             since_s: next.since_s,
             confirmed: is_confirmed(next),
             pending: raise.filter(|trigger| *trigger > next.trigger),
-            governing: self.governing(next, findings),
+            governing: governing(next, findings, view),
             residual: compared.map(|(value, expected)| residual(value, &expected)),
             position_in_band: compared.and_then(|(value, band)| position_in_band(value, &band)),
             rate: view.rate,
@@ -372,28 +403,41 @@ impl Watcher {
         judgement.not_ready = not_ready(&judgement, findings);
         judgement
     }
+}
 
-    /// Of the rules at the instrument's trigger the one with the smallest margin in percent.
-    fn governing(&self, next: &WatchState, findings: &Findings) -> Option<Governing> {
-        let rules = (0_u8..).zip(findings.assessed.iter().zip(next.rules.iter()));
-        let mut best: Option<Governing> = None;
-        for (rule, (found, state)) in rules {
-            let Some(found) = found.filter(|_| state.trigger == next.trigger) else { continue };
-            let Some((trigger, limit)) = found.now.next_above(next.trigger) else { continue };
-            let margin_to_next = found.now.margin(found.value, limit);
-            let percent = |margin: &Margin| margin.percent.unwrap_or(f64::INFINITY);
-            let nearer = best.is_none_or(|b| percent(&margin_to_next) < percent(&b.margin_to_next));
-            if nearer {
-                best = Some(Governing {
-                    rule,
-                    value: found.value,
-                    limits: found.now,
-                    next: trigger,
-                    margin_to_next,
-                });
-            }
+/// Of the rules at the instrument's trigger the one with the smallest margin in percent.
+fn governing(next: &WatchState, findings: &Findings, view: &View) -> Option<Governing> {
+    let percent = |governing: &Governing| governing.margin_to_next.percent.unwrap_or(f64::INFINITY);
+    let rules = (0_u8..).zip(findings.assessed.iter().zip(next.rules.iter()));
+    let mut best: Option<Governing> = None;
+    for (rule, (found, state)) in rules {
+        let found = found.filter(|_| state.trigger == next.trigger);
+        let Some(here) = found.and_then(|found| Governing::of(rule, &found, next.trigger, view))
+        else {
+            continue;
+        };
+        if best.is_none_or(|best| percent(&here) < percent(&best)) {
+            best = Some(here);
         }
-        best
+    }
+    best
+}
+
+impl Governing {
+    fn of(rule: u8, found: &Assessment, trigger: Trigger, view: &View) -> Option<Self> {
+        let (next, limit) = found.now.next_above(trigger)?;
+        let margin_to_next = found.now.margin(found.value, limit);
+        let nearing = view.rate.map(|rate| found.now.side.sign() * rate.per_day);
+        let days = nearing.filter(|_| found.is_reading).map(|rate| margin_to_next.value / rate);
+        let days_to_next = days.filter(|days| *days >= 0.0 && days.is_finite());
+        Some(Self {
+            rule,
+            value: found.value,
+            limits: found.now,
+            next,
+            margin_to_next,
+            days_to_next,
+        })
     }
 }
 
@@ -426,6 +470,7 @@ fn not_ready(judgement: &Judgement, findings: &Findings) -> Option<NotReady> {
         data,
         findings.unknown.map(|unknown| NotReady::Unknown { unknown }),
         beyond.then_some(NotReady::BeyondCurve),
+        findings.idle.then_some(NotReady::HoldNotJudged),
     ];
     reasons.into_iter().flatten().min_by_key(NotReady::rank)
 }

@@ -72,6 +72,14 @@ static WAIT: Bounded = Bounded {
     remedy: "Every minute of waiting is a minute of warning lost; a day is the longest.",
 };
 
+static HOLD: Bounded = Bounded {
+    name: "time into the hold",
+    unit: "s",
+    min: 0.0,
+    max: 31_557_600.0,
+    remedy: "Give it in seconds, up to a year.",
+};
+
 static WINDOW: Bounded = Bounded {
     name: "window of a rate",
     unit: "s",
@@ -193,6 +201,24 @@ impl Default for Persistence {
     }
 }
 
+/// When a rule counts.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Default, Serialize, Deserialize)]
+#[serde(rename_all = "snake_case")]
+pub enum When {
+    /// At any time.
+    #[default]
+    Always,
+    /// Only in a hold that has lasted so long: for a rate that must have fallen, or a pressure
+    /// that must not go on rising, once the liquid level stands still. Take the time no shorter
+    /// than the rate's window, or readings of the rise are still in it. Outside such a hold the
+    /// trigger of the rule stays as it is, and until it has been judged in the present hold the
+    /// instrument does not support the next rise.
+    InHold {
+        /// Time into the hold, s.
+        after_s: i64,
+    },
+}
+
 /// One way in which a reading can raise a trigger.
 #[derive(Debug, Clone, Copy, PartialEq, Default, Serialize, Deserialize)]
 pub struct Rule {
@@ -207,6 +233,9 @@ pub struct Rule {
     pub raising: Persistence,
     /// What lets it fall.
     pub clearing: Persistence,
+    /// When it counts.
+    #[serde(default)]
+    pub when: When,
 }
 
 /// Limits over applied pressure, in the instrument's unit, linear between points. A list that is
@@ -426,6 +455,14 @@ pub enum LimitWarning {
         /// Noise in the same unit.
         noise: f64,
     },
+    /// A curve that begins above zero load: its first limits hold down to zero, where they may be
+    /// too slack.
+    CurveStartsLate {
+        /// Which rule, from 0.
+        rule: u8,
+        /// First pressure of the curve, kPa.
+        pressure_kpa: f64,
+    },
 }
 
 impl fmt::Display for LimitWarning {
@@ -443,12 +480,18 @@ impl fmt::Display for LimitWarning {
                  a trigger that comes and goes. Widen it or ask for more readings.",
                 rule.saturating_add(1)
             ),
+            Self::CurveStartsLate { rule, pressure_kpa } => write!(
+                f,
+                "the curve of rule {} begins at {pressure_kpa} kPa and its first limits hold below \
+                 it: they may miss an early yield. Add a point at 0 kPa.",
+                rule.saturating_add(1)
+            ),
         }
     }
 }
 
-/// Room for both warnings of every rule.
-pub(super) type Warnings = FixedList<Option<LimitWarning>, { 2 * MAX_RULES }>;
+/// Room for all warnings of every rule.
+pub(super) type Warnings = FixedList<Option<LimitWarning>, { 3 * MAX_RULES }>;
 
 impl Limits {
     /// Checks all limits and gives the warnings.
@@ -472,7 +515,7 @@ impl Limits {
         for (index, rule) in self.rules.as_slice().iter().enumerate() {
             self.check_rule(index, rule)?;
             for warning in self.warnings_of(index, rule).into_iter().flatten() {
-                // Cannot be full: two per rule.
+                // Cannot be full: three per rule.
                 let _ = warnings.push(Some(warning));
             }
         }
@@ -484,6 +527,9 @@ impl Limits {
         for persistence in [rule.raising, rule.clearing] {
             READINGS.check(f64::from(persistence.readings))?;
             WAIT.check(persistence.seconds as f64)?;
+        }
+        if let When::InHold { after_s } = rule.when {
+            HOLD.check(after_s as f64)?;
         }
         match &rule.basis {
             Basis::Band { multiples, smallest_half_band } => {
@@ -510,9 +556,20 @@ impl Limits {
         }
     }
 
-    fn warnings_of(&self, index: usize, rule: &Rule) -> [Option<LimitWarning>; 2] {
-        let Some(reading_noise) = self.noise else { return [None, None] };
-        let (distance, scale, noise) = match &rule.basis {
+    fn warnings_of(&self, index: usize, rule: &Rule) -> [Option<LimitWarning>; 3] {
+        let number = u8::try_from(index).unwrap_or(u8::MAX);
+        let [within, chatters] =
+            self.noise.map_or([None, None], |noise| self.noise_warnings(number, rule, noise));
+        let curve = self.curve.filter(|_| matches!(rule.basis, Basis::Curve));
+        let first = curve.and_then(|curve| curve.pressure_kpa.as_slice().first().copied());
+        let late = first.filter(|pressure_kpa| *pressure_kpa > 0.0);
+        let late =
+            late.map(|pressure_kpa| LimitWarning::CurveStartsLate { rule: number, pressure_kpa });
+        [within, chatters, late]
+    }
+
+    fn noise_warnings(&self, rule: u8, of: &Rule, reading_noise: f64) -> [Option<LimitWarning>; 2] {
+        let (distance, scale, noise) = match &of.basis {
             Basis::Band { multiples, smallest_half_band } => (
                 nearest(multiples).map(|multiple| multiple * smallest_half_band),
                 *smallest_half_band,
@@ -525,8 +582,7 @@ impl Limits {
                 (points.filter_map(|at| nearest(&at)).reduce(f64::min), 1.0, reading_noise)
             }
         };
-        let hysteresis = rule.hysteresis * scale;
-        let rule = u8::try_from(index).unwrap_or(u8::MAX);
+        let hysteresis = of.hysteresis * scale;
         let within = distance.filter(|distance| *distance < TIMES_NOISE * noise);
         [
             within.map(|distance| LimitWarning::WithinNoise { rule, distance, noise }),

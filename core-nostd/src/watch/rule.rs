@@ -1,6 +1,6 @@
 //! One rule: its limits at this moment, and its state from one reading to the next.
 
-use super::limits::{Basis, Direction, Limits, Persistence, Rule, Thresholds};
+use super::limits::{Basis, Direction, Limits, Persistence, Rule, Thresholds, When};
 use super::{Rate, Trigger};
 use crate::comparison::{Margin, Side, half_width, margin};
 use crate::quantity::Expected;
@@ -92,6 +92,8 @@ pub(super) struct View {
     pub rate: Option<Rate>,
     pub applied_pressure_kpa: Option<f64>,
     pub expected: Option<Expected>,
+    /// Time into the hold, s.
+    pub hold_s: Option<i64>,
 }
 
 /// A rule against one reading.
@@ -99,6 +101,8 @@ pub(super) struct View {
 pub(super) struct Assessment {
     /// The value judged.
     pub value: f64,
+    /// Whether that is the reading and not its rate.
+    pub is_reading: bool,
     /// Highest trigger whose limit is reached.
     pub raise: Trigger,
     /// Highest trigger that is not cleared.
@@ -136,6 +140,14 @@ impl Rule {
         }
     }
 
+    /// Whether the rule counts at this moment.
+    pub(super) fn counts(&self, view: &View) -> bool {
+        match self.when {
+            When::Always => true,
+            When::InHold { after_s } => view.hold_s.is_some_and(|hold_s| hold_s >= after_s),
+        }
+    }
+
     /// What this rule judges: the reading or its rate.
     fn judged(&self, view: &View) -> Result<f64, Unknown> {
         let reading = view.reading.ok_or(Unknown::Reading)?;
@@ -157,6 +169,7 @@ impl Rule {
         };
         Ok(Assessment {
             value,
+            is_reading: !matches!(self.basis, Basis::Rate { .. }),
             raise: first.raised_by(value).max(second.raised_by(value)),
             hold: first.held_by(value).max(second.held_by(value)),
             gross: beyond(&first) || beyond(&second),
@@ -247,6 +260,17 @@ pub(super) struct RuleState {
 }
 
 impl RuleState {
+    /// A rule that takes over a trigger from limits that held before it.
+    pub(super) fn taking_over(trigger: Trigger, confirmed: bool) -> Self {
+        Self { trigger, seen: if confirmed { 2 } else { 0 }, ..Self::default() }
+    }
+
+    /// A reading at which the rule does not count breaks the readings in a row that would let its
+    /// trigger fall; what is reached stays counted.
+    pub(super) fn idle(&self) -> Self {
+        Self { clear: Run::default(), ..*self }
+    }
+
     /// From one usable reading to the next. A reading that is not good adds to what is reached
     /// and never to what is cleared.
     pub(super) fn after(&self, rule: &Rule, time_s: i64, good: bool, found: &Assessment) -> Self {
