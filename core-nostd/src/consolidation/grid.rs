@@ -16,8 +16,9 @@
 //! x(s) = (tanh((a + b) s - a) + tanh a) / (tanh a + tanh b)
 //! ```
 //!
-//! with a, b = 2.2 at a drained top, base and 0 at a closed one: the end cells of a uniform layer
-//! are 21 times thinner than the widest ones. The share of s that falls into a layer is its claim to
+//! with a, b = min(2.2, 0.55 ln(cells)) at a drained top, base (the cells of the stack, or twice as
+//! many if it drains at one end) and 0 at a closed one: the end cells of one uniform layer over 60
+//! cells are 21 times thinner than the widest ones. The share of s that falls into a layer is its claim to
 //! cells; stacks share by drained ends and the root of thickness. Each layer has at least three
 //! cells (a free-draining one two); each further cell goes to the largest claim per cell already
 //! given.
@@ -102,8 +103,9 @@ pub(super) struct Cell {
 
 const NO_CELL: Cell = Cell { layer: 0, top_m: 0.0, thickness_m: 0.0 };
 
-/// Crowding at a drained end of a stack.
+/// Greatest crowding at a drained end of a stack, and its growth with the cells there.
 const CROWDING: f64 = 2.2;
+const CROWDING_PER_LOG: f64 = 0.55;
 /// Share of thickness in the coordinate of a stack; the rest is diffusion time.
 const BY_THICKNESS: f64 = 0.25;
 
@@ -146,13 +148,6 @@ struct Place {
 }
 
 impl Place {
-    /// A layer outside any stack: equal cells, a small claim.
-    fn free_draining(layer: &ColumnLayer, whole_m: f64) -> Self {
-        let level = Crowding { top: 0.0, base: 0.0 };
-        let claim = 0.25 * layer.thickness_m / whole_m;
-        Self { crowding: level, from_x: 0.0, to_x: 1.0, claim, count: 2 }
-    }
-
     /// Share of the layer's thickness above the fraction `part` of its cells.
     fn share_above(&self, part: f64) -> f64 {
         let (from_s, to_s) = (self.crowding.s(self.from_x), self.crowding.s(self.to_x));
@@ -161,44 +156,69 @@ impl Place {
     }
 }
 
-/// The stack that a consolidating layer belongs to: its layers, and whether its ends drain.
-fn stack_of(layers: &[ColumnLayer], index: usize) -> (&[ColumnLayer], usize, bool, bool) {
-    let (above, here) = layers.split_at(index);
-    let start =
-        above.iter().rposition(|layer| layer.drained).map_or(0, |last| last.saturating_add(1));
-    let length = here.iter().position(|layer| layer.drained).unwrap_or(here.len());
-    let end = index.saturating_add(length);
-    (layers.get(start..end).unwrap_or(&[]), start, start > 0, end < layers.len())
+/// Consolidating layers between free-draining ones or the ends of the column.
+struct Stack<'a> {
+    layers: &'a [ColumnLayer],
+    /// Place of its first layer in the column.
+    start: usize,
+    drains_top: bool,
+    drains_base: bool,
+    thickness_m: f64,
 }
 
-/// Place of a consolidating layer.
-fn place(
-    layers: &[ColumnLayer],
-    index: usize,
-    top: Boundary,
-    base: Boundary,
-    whole_m: f64,
-) -> Place {
-    let (stack, start, drained_above, drained_below) = stack_of(layers, index);
-    let end = |drains: bool| if drains { CROWDING } else { 0.0 };
-    let crowding = Crowding {
-        top: end(drained_above || top == Boundary::Drained),
-        base: end(drained_below || base == Boundary::Drained),
-    };
-    let thickness_m: f64 = stack.iter().map(|layer| layer.thickness_m).sum();
-    let root_time: f64 = stack.iter().map(ColumnLayer::root_time).sum();
-    let share = |layer: &ColumnLayer| {
-        BY_THICKNESS * layer.thickness_m / thickness_m
-            + (1.0 - BY_THICKNESS) * layer.root_time() / root_time
-    };
-    let own = index.saturating_sub(start);
-    let from_x: f64 = stack.iter().take(own).map(share).sum();
-    let to_x = from_x + stack.get(own).map_or(0.0, share);
-    // Rounding of the last sum must not reach past the end.
-    let to_x = if own.saturating_add(1) == stack.len() { 1.0 } else { to_x };
-    let ends = if crowding.top > 0.0 && crowding.base > 0.0 { 2.0 } else { 1.0 };
-    let claim = ends * libm::sqrt(thickness_m / whole_m) * (crowding.s(to_x) - crowding.s(from_x));
-    Place { crowding, from_x, to_x, claim, count: 3 }
+impl<'a> Stack<'a> {
+    /// The stack that the consolidating layer `index` belongs to.
+    fn of(layers: &'a [ColumnLayer], index: usize, top: Boundary, base: Boundary) -> Self {
+        let (above, here) = layers.split_at(index);
+        let start =
+            above.iter().rposition(|layer| layer.drained).map_or(0, |seam| seam.saturating_add(1));
+        let length = here.iter().position(|layer| layer.drained).unwrap_or(here.len());
+        let end = index.saturating_add(length);
+        let own = layers.get(start..end).unwrap_or(&[]);
+        Self {
+            layers: own,
+            start,
+            drains_top: start > 0 || top == Boundary::Drained,
+            drains_base: end < layers.len() || base == Boundary::Drained,
+            thickness_m: own.iter().map(|layer| layer.thickness_m).sum(),
+        }
+    }
+
+    const fn drained_ends(&self) -> f64 {
+        if self.drains_top && self.drains_base { 2.0 } else { 1.0 }
+    }
+
+    /// Claim to cells of the whole stack.
+    fn claim(&self, whole_m: f64) -> f64 {
+        self.drained_ends() * libm::sqrt(self.thickness_m / whole_m)
+    }
+
+    /// Crowding for a stack of about `cells` cells.
+    fn crowding(&self, cells: f64) -> Crowding {
+        let at_one_end = cells / self.drained_ends();
+        let strength = (CROWDING_PER_LOG * libm::log(2.0 * at_one_end)).clamp(0.5, CROWDING);
+        let end = |drains: bool| if drains { strength } else { 0.0 };
+        Crowding { top: end(self.drains_top), base: end(self.drains_base) }
+    }
+
+    /// Place of the layer `index` of the column.
+    fn place(&self, index: usize, claim: f64, cells: f64) -> Place {
+        let root_time: f64 = self.layers.iter().map(ColumnLayer::root_time).sum();
+        let share = |layer: &ColumnLayer| {
+            BY_THICKNESS * layer.thickness_m / self.thickness_m
+                + (1.0 - BY_THICKNESS) * layer.root_time() / root_time
+        };
+        let own = index.saturating_sub(self.start);
+        let from_x: f64 = self.layers.iter().take(own).map(share).sum();
+        // Rounding of the last sum must not stop short of the end or reach past it.
+        let to_x = match self.layers.get(own) {
+            Some(layer) if own.saturating_add(1) < self.layers.len() => from_x + share(layer),
+            _ => 1.0,
+        };
+        let crowding = self.crowding(cells);
+        let share = crowding.s(to_x) - crowding.s(from_x);
+        Place { crowding, from_x, to_x, claim: claim * share, count: 3 }
+    }
 }
 
 const NO_PLACE: Place = Place {
@@ -223,13 +243,25 @@ fn places<const CELLS: usize>(
     if needed > cells || cells > CELLS {
         return Err(Error::TooFewCells { layers: layers.len(), cells, needed });
     }
-    let whole_m = layers.iter().map(|layer| layer.thickness_m).sum();
+    let whole_m: f64 = layers.iter().map(|layer| layer.thickness_m).sum();
+    let free_claim = |layer: &ColumnLayer| 0.25 * layer.thickness_m / whole_m;
+    let stack = |index: usize| Stack::of(layers, index, top, base);
+    let claims = layers.iter().enumerate().map(|(index, layer)| {
+        if layer.drained {
+            return free_claim(layer);
+        }
+        let stack = stack(index);
+        stack.claim(whole_m) * layer.thickness_m / stack.thickness_m
+    });
+    let cells_per_claim = f64::from(u16::try_from(cells).unwrap_or(u16::MAX)) / claims.sum::<f64>();
     let mut places = [NO_PLACE; CELLS];
     for ((index, layer), own) in layers.iter().enumerate().zip(&mut places) {
         *own = if layer.drained {
-            Place::free_draining(layer, whole_m)
+            Place { claim: free_claim(layer), count: 2, ..NO_PLACE }
         } else {
-            place(layers, index, top, base, whole_m)
+            let stack = stack(index);
+            let claim = stack.claim(whole_m);
+            stack.place(index, claim, claim * cells_per_claim)
         };
     }
     for _ in needed..cells {

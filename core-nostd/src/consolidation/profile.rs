@@ -47,13 +47,15 @@ impl Seen {
         (self.centre_m(), self.excess_kpa)
     }
 
-    /// The face between two cells, by continuity of flow.
-    fn face_with(&self, next: &Self, face_m: f64) -> Node {
-        if !next.holds {
-            return (face_m, 0.0);
-        }
-        let both = self.half_cell + next.half_cell;
-        (face_m, (self.half_cell * self.excess_kpa + next.half_cell * next.excess_kpa) / both)
+    /// Flow out of a face at pressure `u` into this cell and the next one behind it, by the
+    /// parabola through the three: `weight u - drive`. Both are returned, weight last.
+    fn flow_from(&self, behind: &Self, face_m: f64) -> (f64, f64) {
+        let near = (self.centre_m() - face_m).abs();
+        let far = (behind.centre_m() - face_m).abs();
+        let conductivity = 0.5 * self.half_cell * self.cell.thickness_m;
+        let scale = conductivity / (near * far * (far - near));
+        let drive = self.excess_kpa * far * far - behind.excess_kpa * near * near;
+        (scale * drive, scale * (far * far - near * near))
     }
 }
 
@@ -82,23 +84,26 @@ impl<const CELLS: usize> Filled<'_, CELLS> {
             return Some(next.node());
         }
         let face_m = if down { last.cell.top_m + last.cell.thickness_m } else { last.cell.top_m };
-        if let Some(next) = next {
-            return Some(last.face_with(&next, face_m));
-        }
         let boundary = if down { self.stepper.base } else { self.stepper.top };
-        if boundary == Boundary::Drained {
+        let drains = match next {
+            Some(next) => !next.holds,
+            None => boundary == Boundary::Drained,
+        };
+        if drains {
             return Some((face_m, 0.0));
         }
-        // No flow: the pressure is even about the face. Each layer has two cells at least.
-        let inner = if away > 1 {
-            self.seen(go(away.checked_sub(2)?))?
-        } else {
-            self.seen(if down { from.checked_sub(1) } else { from.checked_add(1) })?
-        };
-        let near = (last.centre_m() - face_m) * (last.centre_m() - face_m);
-        let far = (inner.centre_m() - face_m) * (inner.centre_m() - face_m);
-        let rise = (last.excess_kpa - inner.excess_kpa) * near / (far - near);
-        Some((face_m, last.excess_kpa + rise))
+        // What flows into both sides of the face is nothing in sum; each layer has two cells at
+        // least.
+        let last_index = go(away.checked_sub(1)?)?;
+        let inner = if down { last_index.checked_sub(1) } else { last_index.checked_add(1) };
+        let (mut drive, mut weight) = last.flow_from(&self.seen(inner)?, face_m);
+        if let Some(next) = next {
+            let (further, further_weight) =
+                next.flow_from(&self.seen(go(away.checked_add(1)?))?, face_m);
+            drive += further;
+            weight += further_weight;
+        }
+        Some((face_m, drive / weight))
     }
 
     fn at(&self, depth_m: f64) -> f64 {
