@@ -4,7 +4,7 @@ use brimstead_engine::chart::theme::LIGHT;
 use brimstead_engine::chart::{Chart, ChartError, LimitKind, Mark, Size};
 use brimstead_engine::report::{
     ChartSection, Fact, FaultRow, ImportFile, ImportMessage, InstrumentRow, LimitValue,
-    LoadAtReading, Margin, ReportPage,
+    LoadAtReading, Margin, ReportPage, values,
 };
 
 const MOMENT_S: i64 = 1_779_539_400;
@@ -142,7 +142,7 @@ pub fn page(charts: &[&Chart]) -> Result<ReportPage, ChartError> {
         Ok(ChartSection {
             caption: chart.description.clone(),
             svg: chart.render(size, &LIGHT)?.svg,
-            values: None,
+            values: Some(values(chart, 200)),
         })
     };
     Ok(ReportPage {

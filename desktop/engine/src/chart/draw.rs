@@ -135,7 +135,8 @@ impl<B: DrawingBackend> Artist<'_, '_, '_, B> {
         let thinned = series::thin(points, self.columns(), None).concat();
         let thinned = self.projected(&thinned);
         let (seen, outside): (Vec<_>, Vec<_>) = thinned.into_iter().partition(|p| window.holds(*p));
-        let size = super::canvas::step(look.weight_px);
+        // Bolder with the lines, but less, so that neighbours stay apart.
+        let size = super::canvas::step(look.weight_px * self.sheet.theme.line_factor.sqrt());
         match dot {
             Dot::Full => {
                 let style = self.sheet.filling(look.class, look.token);

@@ -7,11 +7,13 @@
 mod html;
 mod table;
 mod terminal;
+mod values;
 mod words;
 
 pub use html::HtmlOptions;
 pub use table::{Align, Cell, Column, Table};
 pub use terminal::{TerminalOptions, colour_wanted};
+pub use values::values;
 pub use words::age_in_words;
 
 use crate::chart::{LimitKind, Mark};
