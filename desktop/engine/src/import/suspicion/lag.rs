@@ -12,7 +12,7 @@ use std::collections::BTreeMap;
 const FURTHEST: i64 = 14 * 4;
 /// Share of the changes around the rises, beyond a straight line, that may be left unexplained by
 /// the level for a series to follow it.
-const FOLLOWS: f64 = 0.5;
+const UNEXPLAINED: f64 = 0.5;
 /// How well a shift must fit whole hours, s: creep and dissipation in a hold move the best fit by
 /// some minutes.
 const WHOLE_S: f64 = 900.0;
@@ -86,8 +86,8 @@ fn of_layout(
 
 /// How late the instruments of a layout are together, s; `None` when that is not clear.
 fn late_s(curves: &[Vec<f64>]) -> Option<f64> {
-    /// Mean logarithm by which the misfit must fall for a shift to be believed.
-    const CLEAR: f64 = 0.15;
+    /// How many times less the misfit must be for a shift to be believed.
+    const CLEAR: f64 = 1.15;
     /// How far an instrument's own best shift may lie from that of all, in steps.
     const NEAR: usize = 2;
     let mean: Vec<f64> = (0..curves.first()?.len())
@@ -96,29 +96,31 @@ fn late_s(curves: &[Vec<f64>]) -> Option<f64> {
     let best = least(&mean)?;
     let agreeing =
         curves.iter().filter(|curve| least(curve).is_some_and(|own| own.abs_diff(best) <= NEAR));
-    if mean[FURTHEST as usize] - mean[best] < CLEAR || agreeing.count() * 5 < curves.len() * 3 {
+    if mean[FURTHEST as usize] < CLEAR * mean[best] || agreeing.count() * 5 < curves.len() * 3 {
         return None;
     }
     Some((best as f64 - FURTHEST as f64 + vertex(&mean, best)) * STEP_S as f64)
 }
 
 fn least(misfits: &[f64]) -> Option<usize> {
-    let finite = misfits.iter().enumerate().filter(|(_, misfit)| misfit.is_finite());
-    finite.min_by(|a, b| a.1.total_cmp(b.1)).map(|(at, _)| at)
+    misfits.iter().enumerate().min_by(|a, b| a.1.total_cmp(b.1)).map(|(at, _)| at)
 }
 
-/// The misfit of a series to the level around the rises for each shift tried; `None` when it does
-/// not follow the level at any.
+/// How much worse than the best shift each shift makes a series follow the level around the rises;
+/// `None` when it does not follow the level at any. Each rise counts by its own best, so that the
+/// noise of its time does not matter, and none outvotes all the others.
 fn misfits(points: &[&Sample], fill: &Fill) -> Option<Vec<f64>> {
-    let windows: Vec<Window> =
-        fill.rises.iter().filter_map(|rise| Window::new(points, rise)).collect();
-    if windows.is_empty() {
-        return None;
-    }
-    let misfits: Vec<f64> =
-        (-FURTHEST..=FURTHEST).map(|lag| mean_misfit(&windows, lag * STEP_S, fill)).collect();
-    let best = least(&misfits)?;
-    (misfits[best] < FOLLOWS.ln()).then_some(misfits)
+    const WORST: f64 = 3.0;
+    let windows = fill.rises.iter().filter_map(|rise| Window::new(points, rise));
+    let rises: Vec<(Vec<f64>, f64)> = windows.filter_map(|window| window.misfits(fill)).collect();
+    let mean = |of: &dyn Fn(&(Vec<f64>, f64)) -> f64| {
+        rises.iter().map(of).sum::<f64>() / rises.len() as f64
+    };
+    let follows = !rises.is_empty() && mean(&|(_, best)| *best) < UNEXPLAINED;
+    let steps = 0..=2 * FURTHEST as usize;
+    follows.then(|| {
+        steps.map(|step| mean(&|(misfits, best)| (misfits[step] / best).min(WORST))).collect()
+    })
 }
 
 /// The readings around one rise: time from its middle, h, and value.
@@ -153,7 +155,17 @@ impl Window {
         (kept.len() >= FEWEST && about_line > 0.0).then_some(Self { points: kept, about_line })
     }
 
-    /// What a level so much earlier leaves unexplained, as a share of what a line leaves.
+    /// What the level leaves unexplained at each shift, as a share of what a line leaves, with the
+    /// least of them; infinite where the level is not known, and `None` when that is so without
+    /// shift.
+    fn misfits(&self, fill: &Fill) -> Option<(Vec<f64>, f64)> {
+        let shifts = -FURTHEST..=FURTHEST;
+        let misfits: Vec<f64> =
+            shifts.map(|lag| self.misfit(lag * STEP_S, fill).unwrap_or(f64::INFINITY)).collect();
+        let best = misfits.iter().copied().fold(f64::INFINITY, f64::min);
+        misfits[FURTHEST as usize].is_finite().then_some((misfits, best))
+    }
+
     fn misfit(&self, lag_s: i64, fill: &Fill) -> Option<f64> {
         let mut squares = LeastSquares::default();
         let mut compared = 0;
@@ -163,19 +175,11 @@ impl Window {
                 compared += 1;
             }
         }
-        // A shift must not win by leaving points out.
-        (compared * 10 >= self.points.len() * 9)
-            .then(|| (squares.misfit() / self.about_line).max(1e-6))
+        // A shift must not win by leaving points out; and an exact copy of the level is no
+        // infinitely better proof.
+        let known = compared * 10 >= self.points.len() * 9;
+        known.then(|| (squares.misfit() / self.about_line).max(1e-6))
     }
-}
-
-/// The mean logarithm of the misfits: each rise counts the same, whatever the noise of its time.
-fn mean_misfit(windows: &[Window], lag_s: i64, fill: &Fill) -> f64 {
-    let misfits: Option<Vec<f64>> =
-        windows.iter().map(|window| window.misfit(lag_s, fill)).collect();
-    misfits.map_or(f64::INFINITY, |all| {
-        all.iter().map(|share| share.ln()).sum::<f64>() / all.len() as f64
-    })
 }
 
 /// Sums for a straight fit in three terms.
@@ -224,7 +228,7 @@ impl LeastSquares {
 
 /// Where between grid points the least misfit lies, by a parabola through three of them, in steps.
 fn vertex(misfits: &[f64], best: usize) -> f64 {
-    let at = |index: usize| misfits.get(index).copied().filter(|misfit| misfit.is_finite());
+    let at = |index: usize| misfits.get(index).copied();
     let around = (best.checked_sub(1).and_then(at), at(best), at(best + 1));
     let (Some(before), Some(at), Some(after)) = around else { return 0.0 };
     let curvature = before - 2.0 * at + after;

@@ -41,8 +41,8 @@ fn given_unit(site: &SiteFile, instrument: &Instrument) -> UnitName {
     of_column.into_iter().next().unwrap_or_else(|| UnitName::from(instrument.unit))
 }
 
-/// Another unit than the one given, with what the readings would be multiplied by, and how far (as
-/// a logarithm) that is from what is wanted.
+/// Another unit than the one given, with what the readings would be multiplied by, and how many
+/// times that is more or less than what is wanted.
 #[derive(Debug, Clone, Copy)]
 struct Candidate {
     unit: UnitName,
@@ -54,9 +54,9 @@ struct Candidate {
 fn candidates(given: UnitName, wanted: f64, units: &[UnitName], within: f64) -> Vec<Candidate> {
     let factors = units.iter().filter(|&&unit| unit != given).filter_map(|&unit| {
         let factor = unit.convert(1.0, given)?;
-        Some(Candidate { unit, factor, off: (wanted / factor).ln().abs() })
+        Some(Candidate { unit, factor, off: (wanted / factor).max(factor / wanted) })
     });
-    factors.filter(|candidate| candidate.off <= within.ln()).collect()
+    factors.filter(|candidate| candidate.off <= within).collect()
 }
 
 /// Tests the level against shell and plan. Gives the factor that would put it right.
