@@ -7,8 +7,9 @@
 //! ```
 //!
 //! A room may use the rooms above it in this list and none below:
-//! `config`, `units`, `quantity`, `working`, `math`, `ground`, `load`, `stress`, `consolidation`,
-//! `settlement`, `expectation`, `instrument`, `comparison`, `watch`.
+//! `config`, `units`, `quantity`, `working`, `math`, `instrument` (whose kinds the expectation
+//! must know), `ground`, `load`, `stress`, `consolidation`, `settlement`, `expectation`,
+//! `comparison`, `watch`.
 //!
 //! # Units and signs
 //! SI and its plain multiples, written in the name of every number: `thickness_m`, `pressure_kpa`,

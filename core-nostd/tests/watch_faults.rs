@@ -276,7 +276,7 @@ fn a_record_that_comes_late_gives_the_triggers_it_would_have_given_in_time() {
     let passed: Vec<i64> = judged
         .iter()
         .filter(|j| j.trigger > j.trigger_before)
-        .map(|j| (j.since_s - START_S) / SCAN_S)
+        .map(|j| (j.since_s - START_S).div_euclid(SCAN_S))
         .collect();
     assert_eq!(passed, [21, 28, 35], "limits of 90, 100 and 110 kPa, second reading each");
 }

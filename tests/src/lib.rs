@@ -26,9 +26,9 @@ impl Source {
         self.path.rsplit_once('.').is_some_and(|(_, found)| extensions.contains(&found))
     }
 
-    /// The lines with their numbers, counted from 1.
-    pub fn numbered_lines(&self) -> impl Iterator<Item = (usize, &str)> {
-        self.text.lines().enumerate().map(|(index, line)| (index + 1, line))
+    /// Whether the whole file is tests.
+    pub fn is_test(&self) -> bool {
+        self.path.split('/').any(|part| part == "tests" || part == "tests.rs")
     }
 
     /// The text up to its unit tests, which may use what the code may not.
