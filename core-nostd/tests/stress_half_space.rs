@@ -10,6 +10,7 @@
 )]
 
 mod reference_table;
+mod sheet;
 
 use brimstead_core::load::PlanPosition;
 use brimstead_core::math::quadrature::GaussLegendre;
@@ -18,10 +19,10 @@ use brimstead_core::stress::{
     AxisPoint, AxisymmetricStress, CartesianStress, Disc, Displacement, RigidDisc, Ring,
     StressError, WestergaardDisc,
 };
-use brimstead_core::working::{Step, Working};
 use proptest::prelude::*;
 use proptest::test_runner::{Config, RngSeed};
 use reference_table::{Row, Worst, elastic, printed_tolerance};
+use sheet::Sheet;
 
 /// Against 17-digit tables, of q (stress) or q R / E (displacement). Double rounding of inputs and
 /// results alone takes a few 1e-16; one digit is left for the summation.
@@ -354,23 +355,6 @@ fn loads_of_different_grounds_are_not_added() {
     assert_eq!(refused, StressError::PoissonDiffers { first: 0.3, other: 0.4 });
 }
 
-/// Keeps the steps by name.
-#[derive(Default)]
-struct Sheet(Vec<(String, f64)>, Vec<&'static str>);
-
-impl Working for Sheet {
-    fn step(&mut self, step: Step<'_>) {
-        self.0.push((step.name.to_owned(), step.value));
-        self.1.push(step.source);
-    }
-}
-
-impl Sheet {
-    fn value(&self, name: &str) -> f64 {
-        self.0.iter().find(|(n, _)| n == name).unwrap_or_else(|| panic!("no step {name}")).1
-    }
-}
-
 #[test]
 fn working_can_be_followed_with_a_calculator() {
     let (q, nu) = (150.0, 0.3);
@@ -387,7 +371,7 @@ fn working_can_be_followed_with_a_calculator() {
     let sigma_theta = q * (2.0 * nu * f("A") - f("D") + (1.0 - 2.0 * nu) * f("E"));
     assert!((sigma_theta - stress.sigma_theta_kpa).abs() < 1e-11);
     assert!((q * f("G") - stress.tau_rz_kpa).abs() < 1e-11);
-    assert!(sheet.1[0].contains("Love 1929"), "the source comes with the first step");
+    assert!(sheet.source().contains("Love 1929"), "the source comes with the first step");
 
     let mut sheet = Sheet::default();
     let moved = disc.displacement_at_with(9000.0, 8.0, 4.0, &mut sheet).unwrap();

@@ -108,7 +108,8 @@ impl LayeredGround {
         let mut last: f64 = 0.0;
         let mut thickness: f64 = 0.0;
         for z_m in depths_m {
-            for level in self.levels(load.radius_m(), *z_m, accuracy)? {
+            for division in self.divisions() {
+                let level = self.level(load.radius_m(), *z_m, accuracy, division)?;
                 level.panels(farthest)?;
                 last = last.max(level.last_wave());
                 thickness = thickness.max(level.stack.thickness());
@@ -144,8 +145,9 @@ impl LayeredMap<'_> {
             return Err(differ(self.waves.len(), scratch.len()));
         }
         let radius_m = self.load.radius_m();
-        let levels = self.ground.levels(radius_m, z_m, self.accuracy)?;
-        for (number, level) in levels.iter().enumerate() {
+        out.fill(LayeredResponse::default());
+        for division in self.ground.divisions() {
+            let level = self.ground.level(radius_m, z_m, self.accuracy, division)?;
             let used = self.blocks_to(level.last_wave());
             for (slot, wave) in scratch.iter_mut().zip(self.waves.iter().take(used)) {
                 *slot = KernelBlock::at(&level.stack, &level.target, wave);
@@ -158,8 +160,8 @@ impl LayeredMap<'_> {
                 for (kernel, bessel) in scratch.iter().take(used).zip(table) {
                     sums.add(kernel, bessel);
                 }
-                let response = self.ground.finish(&self.load, level, (*r_m, z_m), &sums)?;
-                *out = if number == 0 { response } else { response.extrapolated(out, 1.0 / 3.0) };
+                let response = self.ground.finish(&self.load, &level, (*r_m, z_m), &sums)?;
+                out.add_scaled(&response, division.weight);
             }
         }
         Ok(())

@@ -3,6 +3,7 @@
 
 use super::{ElasticBase, LayeredGround};
 use crate::config::MAX_ELASTIC_SUBLAYERS;
+use crate::math::root::brent;
 use heapless::Vec;
 
 /// One sublayer of constant modulus.
@@ -25,9 +26,21 @@ pub(super) enum Base {
     Smooth,
 }
 
-/// Sublayers from the surface down. Those of a layer whose modulus grows with depth have equal
-/// ratios of modulus, and one of their interfaces passes through the depth that is asked for, so
-/// that the error of the division is even in their number and can be extrapolated away.
+/// How layers with a gradient are divided.
+#[derive(Debug, Clone, Copy)]
+pub(super) struct Steps {
+    /// Sublayers of the coarsest division.
+    pub(super) count: usize,
+    /// Of these, each is divided again into so many.
+    pub(super) refine: usize,
+    /// A depth within this part of the first sublayer is not cut at: the integral would converge
+    /// too slowly, and what the cut improves is small there.
+    pub(super) sliver: f64,
+}
+
+/// Sublayers from the surface down. Those of a layer whose modulus changes with depth follow a
+/// smooth rule, and one of their interfaces passes through the depth that is asked for, so that
+/// the error of the division is even in their number and can be extrapolated away.
 #[derive(Debug, Clone)]
 pub(super) struct Stack {
     pub(super) sublayers: Vec<Sublayer, MAX_ELASTIC_SUBLAYERS>,
@@ -43,18 +56,20 @@ pub(super) struct Target {
     pub(super) sublayer: Sublayer,
 }
 
+/// Depth, in radii, within which sublayers are about equally thin.
+const NEAR: f64 = 0.5;
+
 /// Depths that differ by less than this part are the same interface.
 const SAME_DEPTH: f64 = 1e-12;
 
 impl Stack {
-    /// `steps` sublayers for each layer with a gradient, cut at `depth` (in radii). `None` when
-    /// they do not fit.
+    /// Layers with a gradient divided and cut at `depth` (in radii). `None` when the sublayers do
+    /// not fit.
     pub(super) fn new(
         ground: &LayeredGround,
         radius_m: f64,
         depth: f64,
-        steps: usize,
-        refine: usize,
+        steps: Steps,
     ) -> Option<Self> {
         let mut sublayers = Vec::new();
         let mut top = 0.0;
@@ -64,18 +79,18 @@ impl Stack {
             let gradient = given.young_gradient_kpa_per_m * radius_m / ground.reference_kpa();
             let whole = Sublayer { top, bottom, twice_shear: 0.0, poisson: given.poisson, layer };
             let graded = Graded { young, gradient, whole };
-            let (above, below) = graded.counts(depth, steps);
+            let (above, below) = graded.counts(depth, &steps);
             if gradient == 0.0 {
-                sublayers.push(graded.between(0.0, 1.0)).ok()?;
+                sublayers.push(graded.undivided()).ok()?;
             } else if below == 0 {
-                graded.divide(0.0, 1.0, above * refine, &mut sublayers)?;
+                graded.divide(0.0, 1.0, above * steps.refine, &mut sublayers)?;
             } else {
                 let cut = graded.share(depth);
-                graded.divide(0.0, cut, above * refine, &mut sublayers)?;
+                graded.divide(0.0, cut, above * steps.refine, &mut sublayers)?;
                 // The cut is the depth itself, not what rounding makes of it.
                 sublayers.last_mut()?.bottom = depth;
                 let first_below = sublayers.len();
-                graded.divide(cut, 1.0, below * refine, &mut sublayers)?;
+                graded.divide(cut, 1.0, below * steps.refine, &mut sublayers)?;
                 sublayers.get_mut(first_below)?.top = depth;
             }
             sublayers.last_mut()?.bottom = bottom;
@@ -117,7 +132,9 @@ impl Stack {
     }
 }
 
-/// A layer with the modulus `young + gradient (z - top)`.
+/// A layer with the modulus `young + gradient (z - top)`, divided evenly in a share that grows
+/// with the logarithm of the modulus and with that of the depth: fine where the modulus or the
+/// load's effect changes fast.
 struct Graded {
     young: f64,
     gradient: f64,
@@ -125,48 +142,52 @@ struct Graded {
 }
 
 impl Graded {
-    /// Logarithm of the modulus at a depth over that at the top.
-    fn logarithm(&self, depth: f64) -> f64 {
-        libm::log1p(self.gradient * (depth - self.whole.top) / self.young)
+    fn young_at(&self, depth: f64) -> f64 {
+        self.young + self.gradient * (depth - self.whole.top)
     }
 
-    /// Share of the logarithmic range above a depth.
+    /// Share of the layer above a depth, 0 at its top and 1 at its bottom.
     fn share(&self, depth: f64) -> f64 {
-        self.logarithm(depth) / self.logarithm(self.whole.bottom)
+        let modulus =
+            |depth: f64| libm::log1p(self.gradient * (depth - self.whole.top) / self.young);
+        let place = |depth: f64| libm::log((depth + NEAR) / (self.whole.top + NEAR));
+        let bottom = self.whole.bottom;
+        0.5 * (modulus(depth) / modulus(bottom) + place(depth) / place(bottom))
+    }
+
+    fn depth_at(&self, share: f64) -> f64 {
+        let Sublayer { top, bottom, .. } = self.whole;
+        // The share rises from 0 to 1 over the bracket, so that a root is always found; the ends
+        // themselves are exact.
+        if share <= 0.0 {
+            top
+        } else if share >= 1.0 {
+            bottom
+        } else {
+            brent(top, bottom, 0.0, |depth| self.share(depth) - share)
+                .unwrap_or(top + share * (bottom - top))
+        }
     }
 
     /// Sublayers above and below a depth inside; all above where the depth is outside or where a
     /// cut would leave a sliver at the surface.
-    fn counts(&self, depth: f64, steps: usize) -> (usize, usize) {
-        let sliver = if self.whole.top > 0.0 { 0.0 } else { 0.5 / steps as f64 };
+    fn counts(&self, depth: f64, steps: &Steps) -> (usize, usize) {
+        let Steps { count, sliver, .. } = *steps;
+        let sliver = if self.whole.top > 0.0 { 0.0 } else { sliver / count as f64 };
         let inside = depth > self.whole.top && depth < self.whole.bottom;
         if self.gradient == 0.0 || !inside || self.share(depth) <= sliver {
-            return (steps, 0);
+            return (count, 0);
         }
-        let above = libm::round(self.share(depth) * steps as f64) as usize;
-        let above = above.clamp(1, steps.saturating_sub(1).max(1));
-        (above, steps.saturating_sub(above).max(1))
+        let above = libm::round(self.share(depth) * count as f64) as usize;
+        let above = above.clamp(1, count.saturating_sub(1).max(1));
+        (above, count.saturating_sub(above).max(1))
     }
 
-    /// The sublayer between two shares of the logarithmic range, with the modulus at its middle.
-    fn between(&self, from: f64, to: f64) -> Sublayer {
-        let range = self.logarithm(self.whole.bottom);
-        let depth = |share: f64| {
-            if self.gradient == 0.0 {
-                self.whole.top + share * (self.whole.bottom - self.whole.top)
-            } else {
-                self.whole.top + self.young / self.gradient * libm::expm1(range * share)
-            }
-        };
-        let young = self.young * libm::exp(0.5 * range * (from + to));
-        Sublayer {
-            top: depth(from),
-            bottom: depth(to),
-            twice_shear: young / (1.0 + self.whole.poisson),
-            ..self.whole
-        }
+    fn undivided(&self) -> Sublayer {
+        Sublayer { twice_shear: self.young / (1.0 + self.whole.poisson), ..self.whole }
     }
 
+    /// Evenly from one share to another, each with the modulus at the middle of its share.
     fn divide(
         &self,
         from: f64,
@@ -174,9 +195,15 @@ impl Graded {
         count: usize,
         sublayers: &mut Vec<Sublayer, MAX_ELASTIC_SUBLAYERS>,
     ) -> Option<()> {
-        let share = |i: usize| from + (to - from) * (i as f64 / count as f64);
+        let depth =
+            |half: usize| self.depth_at(from + (to - from) * (0.5 * half as f64 / count as f64));
+        let mut top = depth(0);
         for i in 0..count {
-            sublayers.push(self.between(share(i), share(i.saturating_add(1)))).ok()?;
+            let half = i.saturating_mul(2);
+            let (middle, bottom) = (depth(half.saturating_add(1)), depth(half.saturating_add(2)));
+            let twice_shear = self.young_at(middle) / (1.0 + self.whole.poisson);
+            sublayers.push(Sublayer { top, bottom, twice_shear, ..self.whole }).ok()?;
+            top = bottom;
         }
         Some(())
     }

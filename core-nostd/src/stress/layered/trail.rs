@@ -43,9 +43,28 @@ impl LayeredGround {
         }
         let sum = "closed form + integral of what the other layers change";
         let sigma_z = response.stress.sigma_z_kpa;
-        trail.step("kPa", ("vertical stress increment", sigma_z, sum), place);
+        trail.step("kPa", ("vertical stress of this division", sigma_z, sum), place);
         let settlement = response.displacement.settlement_m;
-        trail.step("m", ("settlement", settlement, sum), place);
+        trail.step("m", ("settlement of this division", settlement, sum), place);
         Ok(())
+    }
+
+    pub(super) fn write_result(result: &LayeredResponse, working: &mut impl Working) {
+        let formula =
+            "one division as it is; three as f4 + (20 (f4 - f2) - (f2 - f1))/45 by fineness";
+        let mut trail = Trail::new(working, "");
+        let (stress, moved) = (&result.stress, &result.displacement);
+        let kpa = [
+            ("vertical stress increment", stress.sigma_z_kpa, formula),
+            ("radial stress increment", stress.sigma_r_kpa, formula),
+            ("tangential stress increment", stress.sigma_theta_kpa, formula),
+            ("shear stress increment", stress.tau_rz_kpa, formula),
+        ];
+        trail.steps("kPa", &kpa, &[]);
+        let metres = [
+            ("settlement", moved.settlement_m, formula),
+            ("radial displacement, outwards", moved.radial_m, formula),
+        ];
+        trail.steps("m", &metres, &[]);
     }
 }
