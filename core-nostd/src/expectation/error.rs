@@ -1,7 +1,7 @@
 use crate::consolidation;
 use crate::ground::GroundError;
-use crate::instrument::Kind;
 use crate::load::LoadError;
+use crate::quantity::Kind;
 use crate::quantity::OutOfRange;
 use crate::settlement::SettlementError;
 use crate::stress::StressError;

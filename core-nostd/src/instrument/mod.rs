@@ -9,12 +9,11 @@
 //! instrument and never of the ground: alarm triggers are the affair of [`crate::watch`].
 
 mod fixed_list;
-mod kind;
 mod reading;
 
 pub mod check;
 pub mod reduce;
 
+pub use crate::quantity::Kind;
 pub use fixed_list::{FixedList, Full};
-pub use kind::Kind;
 pub use reading::{CorrectionInput, DataState, Doubt, OutOfOrder, Reading};
