@@ -1,7 +1,8 @@
 //! One instrument: from a reading and the state before it to the trigger and the state after it.
 
+use super::door::{LimitError, LimitWarning, Warnings};
 use super::history::History;
-use super::limits::{LimitError, LimitWarning, Limits, Warnings};
+use super::limits::Limits;
 use super::rule::{Assessment, LimitsNow, RuleState, Unknown, View};
 use super::{Inhibition, Rate, Trigger};
 use crate::comparison::{Margin, position_in_band, residual};

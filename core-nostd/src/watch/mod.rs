@@ -91,6 +91,7 @@
 //! A trigger moves no pump and a limit is never moved here. The responsible licensed engineer
 //! decides; do not rely on one instrument, one logger, one link or one person.
 
+mod door;
 mod history;
 mod inhibition;
 mod judge;
@@ -99,12 +100,11 @@ mod rule;
 mod site;
 mod trigger;
 
+pub use door::{LimitError, LimitWarning};
 pub use history::{Rate, RateWindow};
 pub use inhibition::{Inhibition, InhibitionError, Reason};
 pub use judge::{Governing, Judgement, NotReady, Observation, WatchState, Watcher};
-pub use limits::{
-    Basis, Curve, Direction, LimitError, LimitWarning, Limits, Persistence, Rule, Thresholds, When,
-};
+pub use limits::{Basis, Curve, Direction, Limits, Persistence, Rule, Thresholds, When};
 pub use rule::{LimitsNow, Unknown};
 pub use site::{Fault, Outcome, Post, ScanSummary, Site, SiteError};
 pub use trigger::Trigger;

@@ -94,9 +94,10 @@ impl Sorted {
         let at = self.as_slice().partition_point(|held| *held <= value);
         let grown = self.len.saturating_add(1);
         if let Some(tail) = self.values.get_mut(at..grown) {
-            tail.rotate_right(1);
-            if let Some(slot) = tail.first_mut() {
-                *slot = value;
+            // Each larger value moves up by one; carried by hand because a rotation can panic.
+            let mut carried = value;
+            for slot in tail {
+                core::mem::swap(slot, &mut carried);
             }
             self.len = grown;
         }
