@@ -1,6 +1,6 @@
 //! Expected readings of a whole site: sets up the core's columns and points for every case of the
 //! band, carries them through a load history on all processors, and gives each instrument its
-//! expected band at the times asked for, in the instrument's own unit.
+//! expected band at the times asked for.
 
 mod history;
 mod model;

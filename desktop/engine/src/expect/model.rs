@@ -54,8 +54,6 @@ pub struct Instrument {
     pub sensor: Sensor,
     /// Noise of a reading, one standard deviation, in the core's unit (kPa or m).
     pub noise_sd: f64,
-    /// Multiplies a value of the core (kPa, m) into the instrument's own unit.
-    pub scale: f64,
 }
 
 /// The site as the core calculates it: the best estimate first, then the cases of the band.
@@ -195,7 +193,6 @@ fn multipliers(case: &BandCase) -> Multipliers {
 }
 
 fn instrument(given: &site::Instrument) -> Instrument {
-    let scale = scale_of(given.unit);
     Instrument {
         id: given.id.clone(),
         sensor: Sensor {
@@ -204,8 +201,7 @@ fn instrument(given: &site::Instrument) -> Instrument {
             depth_m: given.depth_m,
             tip_sinks: given.tip_sinks.unwrap_or(false),
         },
-        noise_sd: given.noise_sd / scale,
-        scale,
+        noise_sd: given.noise_sd / scale_of(given.unit),
     }
 }
 

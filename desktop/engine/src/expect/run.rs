@@ -13,7 +13,7 @@ type CoreColumn = Column<COLUMN_CELLS>;
 type CoreState = ColumnState<COLUMN_CELLS>;
 
 /// Expected bands, for each instrument of the model in order, at each of its asked times in order;
-/// in the instrument's own unit. None where nothing is expected of the kind of instrument, or
+/// in the core's unit (kPa, m). None where nothing is expected of the kind of instrument, or
 /// before the baseline.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Expectations {
@@ -111,12 +111,10 @@ fn run_group(
 
 fn join_cases(member: &Member<'_>, cases: &[Vec<Option<f64>>]) -> Answer {
     let noise_sd = member.instrument.noise_sd;
-    let scale = member.instrument.scale;
     let bands = (0..member.times.len())
         .map(|time| {
             let values: Option<Vec<f64>> = cases.iter().map(|case| case[time]).collect();
-            let band = envelope(&values?, noise_sd)?;
-            Expected::new(band.low * scale, band.likely * scale, band.high * scale)
+            envelope(&values?, noise_sd)
         })
         .collect();
     Answer { index: member.index, bands }
