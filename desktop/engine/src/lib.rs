@@ -6,6 +6,7 @@
 //! page, in JSON or in a terminal.
 
 pub mod chart;
+pub mod compare;
 pub mod expect;
 pub mod import;
 pub mod report;

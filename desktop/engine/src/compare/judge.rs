@@ -19,12 +19,7 @@ pub(super) struct Live {
 }
 
 /// Judges all timelines together up to the last instant of the run.
-pub(super) fn judge_all(
-    site: &SiteFile,
-    load: &LoadLine,
-    timelines: &mut [Timeline],
-    last_s: i64,
-) {
+pub(super) fn judge_all(site: &SiteFile, load: &LoadLine, timelines: &mut [Timeline], last_s: i64) {
     for timeline in timelines.iter_mut() {
         mark_silences(timeline, last_s);
     }
@@ -144,12 +139,8 @@ fn judge_scan(
 
 fn check(timeline: &Timeline, applied_pressure_kpa: Option<f64>) -> (Channel, Checked) {
     let row = &timeline.rows[timeline.live.next];
-    let reading = Reading {
-        time_s: row.time_s,
-        value: row.value,
-        state: row.data_state,
-        doubt: row.doubt,
-    };
+    let reading =
+        Reading { time_s: row.time_s, value: row.value, state: row.data_state, doubt: row.doubt };
     let as_it_is = (timeline.live.channel, Checked { reading, stepped: false, gap_s: None });
     match &timeline.checker {
         Some(checker) => checker

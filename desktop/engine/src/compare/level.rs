@@ -109,9 +109,10 @@ fn gauges<'a>(site: &SiteFile, readings: &'a [Vec<Reduced>]) -> Vec<Gauge<'a>> {
             continue;
         }
         let moves_by_m = (STANDS_STILL_SD * given.noise_sd).max(STANDS_STILL_M);
-        let area_m2 = site.tanks.first().map_or(0.0, |tank| {
-            std::f64::consts::FRAC_PI_4 * tank.diameter_m * tank.diameter_m
-        });
+        let area_m2 = site
+            .tanks
+            .first()
+            .map_or(0.0, |tank| std::f64::consts::FRAC_PI_4 * tank.diameter_m * tank.diameter_m);
         let gauge = Gauge {
             index,
             readings,
@@ -169,11 +170,11 @@ impl Gauge<'_> {
         }
     }
 
-    /// How far it has moved since the last value not after an instant, m.
+    /// How far it has moved since its first value at or after an instant, m. What it moved before
+    /// says nothing of a gauge that stands still since then.
     fn moved_since(&self, since_s: i64) -> f64 {
-        let after = self.seen.partition_point(|seen| seen.0 <= since_s);
-        let from = self.seen.get(after.saturating_sub(1));
-        match (from, self.seen.last()) {
+        let after = self.seen.partition_point(|seen| seen.0 < since_s);
+        match (self.seen.get(after), self.seen.last()) {
             (Some(from), Some(to)) => (to.1 - from.1).abs(),
             _ => 0.0,
         }

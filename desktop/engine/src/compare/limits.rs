@@ -65,10 +65,8 @@ pub(super) fn checks_of(instrument: &Instrument) -> Checks {
     let scale = scale_of(instrument.unit);
     let noise = instrument.noise_sd / scale;
     let range = Range { low: instrument.range.0 / scale, high: instrument.range.1 / scale };
-    let logged = matches!(
-        instrument.kind,
-        InstrumentKind::Piezometer | InstrumentKind::SettlementCell
-    );
+    let logged =
+        matches!(instrument.kind, InstrumentKind::Piezometer | InstrumentKind::SettlementCell);
     Checks {
         range: Some(range),
         step: logged.then_some(0.1 * (range.high - range.low)),
@@ -99,10 +97,7 @@ fn list<const N: usize>(values: &[f64]) -> FixedList<f64, N> {
 ///
 /// # Errors
 /// Limits that do not fit the core or contradict each other.
-pub fn limits_of(
-    site: &SiteFile,
-    instrument: &Instrument,
-) -> Result<Option<Limits>, LimitsError> {
+pub fn limits_of(site: &SiteFile, instrument: &Instrument) -> Result<Option<Limits>, LimitsError> {
     let defaults = site.limit_defaults.get(&instrument.kind);
     let given: &[Limit] = match (&instrument.limits, defaults) {
         (Some(own), _) => own,

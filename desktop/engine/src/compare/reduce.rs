@@ -36,10 +36,12 @@ pub fn readings_of(instrument: &Instrument, imported: &Imported) -> Vec<Reduced>
             })
             .collect(),
     };
-    list.extend(series.not_read.iter().map(|mark| Reduced {
-        reading: Reading::absent(mark.time_s, Doubt::NoAnswer),
-        raw: None,
-    }));
+    list.extend(
+        series.not_read.iter().map(|mark| Reduced {
+            reading: Reading::absent(mark.time_s, Doubt::NoAnswer),
+            raw: None,
+        }),
+    );
     list.sort_by_key(|one| one.reading.time_s);
     list
 }

@@ -127,7 +127,11 @@ impl Timeline {
             watcher,
             checker: Checker::new(&checks_of(given)).ok(),
             stale_after_s: super::level::seconds(given.stale_after_min),
-            live: judge::Live { channel: Channel::default(), state: WatchState::default(), next: 0 },
+            live: judge::Live {
+                channel: Channel::default(),
+                state: WatchState::default(),
+                next: 0,
+            },
         })
     }
 
