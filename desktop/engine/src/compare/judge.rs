@@ -65,6 +65,7 @@ fn mark_silences(timeline: &mut Timeline, last_s: i64) {
         expected: None,
         liquid_level_m: None,
         applied_pressure_kpa: None,
+        hold_since_s: None,
         trigger: Trigger::Normal,
         judgement: None,
     }));
@@ -125,6 +126,7 @@ fn judge_scan(
         row.doubt = checked.reading.doubt;
         row.liquid_level_m = in_use.map(|load| load.liquid_level_m);
         row.applied_pressure_kpa = known.map(|load| load.applied_pressure_kpa);
+        row.hold_since_s = known.and_then(|load| load.hold_since_s);
         // A gauge gives the load; nothing is unknown about its own reading.
         if known.is_none() && timeline.kind != InstrumentKind::LevelGauge {
             row.expected = None;
@@ -157,6 +159,7 @@ fn judge_one(timeline: &mut Timeline, reading: Reading, neighbours: &[Trigger]) 
         reading,
         applied_pressure_kpa: row.applied_pressure_kpa,
         expected: row.expected,
+        hold_since_s: row.hold_since_s,
     };
     if let Some(watcher) = &timeline.watcher {
         // Rows are by rising time, each time once, so nothing comes out of order.

@@ -13,6 +13,10 @@ const STANDS_STILL_SD: f64 = 6.0;
 const STANDS_STILL_M: f64 = 0.02;
 /// Another gauge has moved when it has changed by this many times that.
 const OTHERS_MOVED: f64 = 3.0;
+/// A level within this of where it was is held, m: noise, rain, temperature.
+const HELD_WITHIN_M: f64 = 0.05;
+/// And a hold it is after this time, s; a slow rise passes the band sooner.
+const HELD_FOR_S: i64 = 4 * 3600;
 /// Time a gauge must have stood still before others count against it, s.
 const PATIENCE_S: i64 = 20 * 60;
 
@@ -27,6 +31,8 @@ pub struct LoadInUse {
     pub applied_pressure_kpa: f64,
     /// The gauge it comes from, by its place in the site file; none while the load is unknown.
     pub gauge: Option<usize>,
+    /// Since when the level is held; none while it moves or is unknown.
+    pub hold_since_s: Option<i64>,
 }
 
 /// The load over a run.
@@ -80,6 +86,7 @@ pub fn load_line(site: &SiteFile, model: &Model, readings: &[Vec<Reduced>]) -> L
     times.sort_unstable();
     times.dedup();
     let mut points: Vec<LoadInUse> = Vec::with_capacity(times.len());
+    let mut held = Held::default();
     for time_s in times {
         read_all(&mut gauges, time_s);
         let chosen = gauges.iter().find_map(|gauge| gauge.believed(time_s));
@@ -92,10 +99,31 @@ pub fn load_line(site: &SiteFile, model: &Model, readings: &[Vec<Reduced>]) -> L
             liquid_level_m,
             applied_pressure_kpa: model.applied_pressure_kpa(time_s, liquid_level_m),
             gauge: chosen.map(|(index, _)| index),
+            hold_since_s: chosen.and_then(|_| held.since_s(time_s, liquid_level_m)),
         });
     }
     let gauges = gauges.into_iter().map(|gauge| (gauge.index, gauge.checked)).collect();
     LoadLine { points, gauges }
+}
+
+/// Follows whether the level stands still.
+#[derive(Default)]
+struct Held {
+    reference: Option<(i64, f64)>,
+}
+
+impl Held {
+    fn since_s(&mut self, time_s: i64, level_m: f64) -> Option<i64> {
+        match self.reference {
+            Some((since_s, reference_m)) if (level_m - reference_m).abs() <= HELD_WITHIN_M => {
+                (time_s - since_s >= HELD_FOR_S).then_some(since_s)
+            }
+            _ => {
+                self.reference = Some((time_s, level_m));
+                None
+            }
+        }
+    }
 }
 
 fn shell_height_m(site: &SiteFile) -> f64 {

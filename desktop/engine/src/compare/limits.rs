@@ -7,7 +7,9 @@ use crate::site::{
 };
 use brimstead_core::instrument::FixedList;
 use brimstead_core::instrument::check::{Checks, FlatLine, Hampel, Range, Rods};
-use brimstead_core::watch::{self, Basis, Curve, LimitError, Limits, RateWindow, Rule, Thresholds};
+use brimstead_core::watch::{
+    self, Basis, Curve, LimitError, Limits, RateWindow, Rule, Thresholds, When,
+};
 use thiserror::Error;
 
 /// A trigger by a band falls when the value is back by this share of half a band.
@@ -220,6 +222,7 @@ impl Build<'_> {
             hysteresis,
             raising: self.raising,
             clearing: self.raising,
+            when: When::Always,
         };
         self.limits.rules.push(rule).map_err(|_| self.too_many("rules"))
     }

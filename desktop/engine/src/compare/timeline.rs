@@ -28,6 +28,8 @@ pub struct Row {
     pub liquid_level_m: Option<f64>,
     /// Applied pressure, kPa; none while the load is unknown.
     pub applied_pressure_kpa: Option<f64>,
+    /// Since when the liquid level is held; none while it moves or is unknown.
+    pub hold_since_s: Option<i64>,
     /// The trigger after it.
     pub trigger: Trigger,
     /// What it means; none for an instrument without limits.
@@ -113,6 +115,7 @@ impl Timeline {
             expected: band,
             liquid_level_m: None,
             applied_pressure_kpa: None,
+            hold_since_s: None,
             trigger: Trigger::Normal,
             judgement: None,
         });
