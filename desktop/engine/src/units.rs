@@ -150,6 +150,12 @@ impl UnitName {
         }
     }
 
+    /// The unit in which a channel that is no instrument is worked with.
+    #[must_use]
+    pub(crate) fn of_channel(channel: &str) -> Self {
+        if channel == "barometer" { Self::Kpa } else { Self::Celsius }
+    }
+
     /// Converts a value of this unit to another of the same dimension; `None` across dimensions.
     /// The same unit gives the same bits back.
     #[must_use]

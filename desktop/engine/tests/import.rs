@@ -49,6 +49,20 @@ fn a_good_file_is_taken_whole() {
 }
 
 #[test]
+fn the_report_goes_out_as_json_and_names_the_columns_taken() {
+    let imported = logger("2031-03-02 06:00:00,0.010,ERROR,1,101.2,27.1,8440\n");
+    let report = serde_json::to_value(&imported.report).unwrap();
+    let file = &report["files"][0];
+    assert_eq!(file["refused_by_reason"], serde_json::json!({ "text": 1 }));
+    assert_eq!(file["refused"][0]["reason"], "text");
+    let digits = serde_json::json!({
+        "header": "P4 digits", "of": { "instrument": "P4" }, "signal": "digits", "unit": "digits"
+    });
+    assert!(file["columns_taken"].as_array().unwrap().contains(&digits), "{file}");
+    assert_eq!(file["columns_taken"].as_array().unwrap().len(), 6);
+}
+
+#[test]
 fn refused_fields_are_listed_by_line_and_leave_a_mark() {
     let imported = logger(
         "2031-03-02 06:00:00,0.010,ERROR,1,101.2,27.1,8440\n\

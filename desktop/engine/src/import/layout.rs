@@ -1,6 +1,6 @@
 //! Which layout a file has, and which of its columns are taken.
 
-use super::report::FileReport;
+use super::report::{ColumnTaken, FileReport};
 use super::rows::{TakenColumn, below, headers};
 use super::series::SeriesOf;
 use crate::site::{Column, Instrument, ReadingsLayout, Signal, SiteFile};
@@ -74,7 +74,7 @@ pub(super) fn target(column: &Column, instruments: &[Instrument]) -> Result<Targ
             (SeriesOf::Instrument(instrument.clone()), *unit, to, signal)
         }
         Column::Channel { channel, unit } => {
-            let to = if channel == "barometer" { UnitName::Kpa } else { UnitName::Celsius };
+            let to = UnitName::of_channel(channel);
             (SeriesOf::Channel(channel.clone()), *unit, to, Signal::Engineering)
         }
     };
@@ -96,6 +96,12 @@ pub(super) fn take_columns(
     for (header, column) in &layout.columns {
         let reason = match (&positions(&seen.headers, header)[..], target(column, instruments)) {
             (&[position], Ok(target)) => {
+                report.columns_taken.push(ColumnTaken {
+                    header: header.clone(),
+                    of: target.of.clone(),
+                    signal: target.signal,
+                    unit: target.unit,
+                });
                 taken.push(taken_column(position, header, target));
                 continue;
             }

@@ -18,8 +18,8 @@ mod text;
 
 pub use number::NotANumber;
 pub use report::{
-    ColumnNote, Conflict, FileReport, Gap, ImportReport, LISTED_PER_FILE, LayoutUsed, Reason,
-    Refused, Source,
+    ColumnNote, ColumnTaken, Conflict, FileReport, Gap, ImportReport, LISTED_PER_FILE, LayoutUsed,
+    Reason, Refused, Source,
 };
 pub use series::{NoValue, NotRead, Sample, Series, SeriesOf};
 pub use suspicion::{Suspicion, SuspicionKind};
@@ -61,6 +61,18 @@ impl Imported {
         self.series
             .iter()
             .find(|series| matches!(&series.of, SeriesOf::Channel(name) if name == channel))
+    }
+
+    /// Lists the times without readings longer than the age at which they are stale.
+    pub(crate) fn find_gaps(&mut self, site: &SiteFile) {
+        for series in &self.series {
+            let instrument = site.instruments.iter().find(
+                |instrument| matches!(&series.of, SeriesOf::Instrument(id) if *id == instrument.id),
+            );
+            if let Some(instrument) = instrument {
+                self.report.gaps.extend(series.gaps(instrument.stale_after_min * 60.0));
+            }
+        }
     }
 
     /// The liquid level in the tank under test: the master gauge, or the only one.
@@ -236,14 +248,9 @@ impl<'s> Import<'s> {
         let mut series: Vec<Series> = self.series.into_values().collect();
         for series in &mut series {
             series.settle(&mut self.report);
-            let instrument = self.site.instruments.iter().find(
-                |instrument| matches!(&series.of, SeriesOf::Instrument(id) if *id == instrument.id),
-            );
-            if let Some(instrument) = instrument {
-                self.report.gaps.extend(series.gaps(instrument.stale_after_min * 60.0));
-            }
         }
         let mut imported = Imported { series, report: self.report };
+        imported.find_gaps(self.site);
         imported.report.suspicions = suspicion::all(self.site, &imported);
         imported
     }

@@ -1,9 +1,11 @@
 //! What was taken in, what was not, and why. Nothing is left out silently.
 
 use super::number::NotANumber;
+use super::series::SeriesOf;
 use super::suspicion::Suspicion;
 use super::text::EncodingFrom;
-use crate::site::FileEncoding;
+use crate::site::{FileEncoding, Signal};
+use crate::units::UnitName;
 use serde::Serialize;
 use std::collections::BTreeMap;
 use std::fmt;
@@ -55,6 +57,8 @@ pub struct FileReport {
     pub latest_by_s: i64,
     /// First and last time of an accepted row.
     pub times_s: Option<(i64, i64)>,
+    /// Columns that were taken, and what they are.
+    pub columns_taken: Vec<ColumnTaken>,
     /// Columns that nothing says the meaning of, and columns of the layout that the file lacks.
     pub columns: Vec<ColumnNote>,
     /// Anything else worth knowing, such as guesses.
@@ -73,6 +77,19 @@ pub enum LayoutUsed {
     None,
 }
 
+/// A column that was taken.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct ColumnTaken {
+    /// Its header.
+    pub header: String,
+    /// Whose readings it holds.
+    pub of: SeriesOf,
+    /// Raw digits or engineering values.
+    pub signal: Signal,
+    /// Unit in the file.
+    pub unit: UnitName,
+}
+
 /// A column that was not taken.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize)]
 pub struct ColumnNote {
@@ -86,8 +103,6 @@ pub struct ColumnNote {
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash, Serialize)]
 #[serde(rename_all = "snake_case")]
 pub enum Reason {
-    /// A field is not a number.
-    Number(NotANumber),
     /// The time does not fit the format.
     Time,
     /// The time occurs twice where clocks go back.
@@ -98,6 +113,10 @@ pub enum Reason {
     FieldCount,
     /// A quotation mark is not closed on its line.
     OpenQuote,
+    /// A field is not a number.
+    // A word like the others, so that it can be the key of a JSON object.
+    #[serde(untagged)]
+    Number(NotANumber),
 }
 
 impl fmt::Display for Reason {
@@ -192,6 +211,7 @@ impl FileReport {
             out_of_order: 0,
             latest_by_s: 0,
             times_s: None,
+            columns_taken: Vec::new(),
             columns: Vec::new(),
             notes: Vec::new(),
         }

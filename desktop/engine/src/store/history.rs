@@ -1,7 +1,7 @@
 //! What people enter about instruments and moments, apart from limits and decisions.
 
 use super::error::{Fault, StoreError};
-use super::types::{Change, LONGEST_NAME, LONGEST_TEXT, Recorded, finite, instant, text, utc};
+use super::types::{Act, Change, LONGEST_NAME, LONGEST_TEXT, Recorded, finite, instant, text, utc};
 use rusqlite::{Connection, OptionalExtension, Params, Row, ToSql};
 use serde::{Deserialize, Serialize};
 use serde_json::Value;
@@ -112,18 +112,7 @@ pub struct Inhibition {
     /// Until when, unless lifted before.
     pub until_s: i64,
     /// By whom, when and why it was lifted.
-    pub lifted: Option<Lifted>,
-}
-
-/// The end of an inhibition before its time.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
-pub struct Lifted {
-    /// By whom.
-    pub who: String,
-    /// When.
-    pub at_s: i64,
-    /// Why.
-    pub why: String,
+    pub lifted: Option<Act>,
 }
 
 /// A note.
@@ -177,6 +166,14 @@ pub(super) fn entries<T>(
         });
     }
     Ok(found)
+}
+
+/// Who, when and why of something else, which may not have happened, from a column on.
+pub(super) fn act(row: &Row<'_>, from: usize) -> Result<Option<Act>, Fault> {
+    Ok(match row.get(from)? {
+        Some(who) => Some(Act { who, at_s: row.get(from + 1)?, why: row.get(from + 2)? }),
+        None => None,
+    })
 }
 
 /// Refuses an instrument that no site file has named.
@@ -443,11 +440,7 @@ pub(super) fn inhibitions(
          WHERE ?1 IS NULL OR (i.at_s <= ?1 AND ?1 < i.until_s AND (e.at_s IS NULL OR ?1 < e.at_s))
          ORDER BY i.id";
     entries(connection, sql, [at_s], |row| {
-        let lifted = match row.get(6)? {
-            Some(who) => Some(Lifted { who, at_s: row.get(7)?, why: row.get(8)? }),
-            None => None,
-        };
-        Ok(Inhibition { instrument: row.get(4)?, until_s: row.get(5)?, lifted })
+        Ok(Inhibition { instrument: row.get(4)?, until_s: row.get(5)?, lifted: act(row, 6)? })
     })
 }
 

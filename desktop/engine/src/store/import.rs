@@ -2,9 +2,11 @@
 
 use super::decisions::hex;
 use super::error::{Fault, StoreError};
-use super::history::{HEAD, add, entries};
-use super::readings::{HourSummary, RawReading, RawSeries};
-use super::types::{Change, LONGEST_NAME, Recorded, is_instant, text, utc};
+use super::history::{act, add, entries};
+use super::readings::{Channel, HourSummary, number_of};
+use super::types::{Act, Change, LONGEST_NAME, Recorded, is_instant, text, utc};
+use crate::import::NoValue;
+use crate::units::UnitName;
 use rusqlite::{CachedStatement, Connection, OptionalExtension, ToSql};
 use serde::{Deserialize, Serialize};
 use serde_json::Value;
@@ -22,6 +24,41 @@ pub struct ImportFile<'a> {
     pub report: &'a Value,
 }
 
+/// Readings of one channel, as read from one file.
+#[derive(Debug, Clone, PartialEq)]
+pub struct RawSeries {
+    /// What gives them.
+    pub channel: Channel,
+    /// Unit they are written in.
+    pub unit: UnitName,
+    /// The readings.
+    pub readings: Vec<RawReading>,
+    /// Times at which a row stood but no value.
+    pub not_read: Vec<RawNotRead>,
+}
+
+/// One reading, as read.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct RawReading {
+    /// When it was measured.
+    pub time_s: i64,
+    /// The value, in the unit of the series.
+    pub value: f64,
+    /// Line in the file.
+    pub line: u32,
+}
+
+/// A row without a value.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct RawNotRead {
+    /// When.
+    pub time_s: i64,
+    /// Why.
+    pub reason: NoValue,
+    /// Line in the file.
+    pub line: u32,
+}
+
 /// What became of the readings of a file.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize)]
 pub struct ImportOutcome {
@@ -37,6 +74,8 @@ pub struct ImportOutcome {
     /// Readings that differ from one held for the same channel and time. They are kept aside; the
     /// one held first counts.
     pub conflicts: u64,
+    /// Times without a value that were not known before.
+    pub not_read: u64,
     /// Readings that were not stored.
     pub refused: Vec<RefusedReading>,
     /// Readings that came later than others of their channel measured after them.
@@ -85,6 +124,8 @@ pub struct ImportedFile {
     pub report: Value,
     /// What became of its readings.
     pub outcome: ImportOutcome,
+    /// By whom, when and why its readings were withdrawn.
+    pub withdrawn: Option<Act>,
 }
 
 /// SHA-256 of bytes, in hexadecimal.
@@ -102,7 +143,9 @@ pub(super) fn import(
 ) -> Result<ImportOutcome, Fault> {
     text("The name of the file", file.name, LONGEST_NAME)?;
     check_hash(file.hash)?;
-    series.iter().try_for_each(|one| text("The name of a channel", &one.channel, LONGEST_NAME))?;
+    for one in series {
+        text("The name of a channel", one.channel.of.name(), LONGEST_NAME)?;
+    }
     let known: Option<i64> = connection
         .query_row("SELECT max(id) FROM import_file WHERE hash = ?1", [file.hash], |row| row.get(0))
         .optional()?
@@ -115,7 +158,7 @@ pub(super) fn import(
         intake.take(one)?;
     }
     let mut outcome = intake.outcome;
-    if let Some(known) = known.filter(|_| outcome.accepted == 0 && outcome.conflicts == 0) {
+    if let Some(known) = known.filter(|_| !outcome.is_new()) {
         outcome.file = known;
         outcome.known_already = true;
         return Ok(outcome);
@@ -137,13 +180,23 @@ fn check_hash(hash: &str) -> Result<(), StoreError> {
     })
 }
 
+/// Adds readings to those of the same hour.
+pub(super) const ADD_TO_HOUR: &str = "
+    count = count + excluded.count,
+    lowest_s = CASE WHEN excluded.lowest < lowest THEN excluded.lowest_s ELSE lowest_s END,
+    lowest = min(lowest, excluded.lowest),
+    highest_s = CASE WHEN excluded.highest > highest THEN excluded.highest_s ELSE highest_s END,
+    highest = max(highest, excluded.highest)";
+
 /// One file on its way in.
 struct Intake<'c> {
     connection: &'c Connection,
     at_s: i64,
     insert: CachedStatement<'c>,
     held: CachedStatement<'c>,
+    kept_aside: CachedStatement<'c>,
     keep_aside: CachedStatement<'c>,
+    mark: CachedStatement<'c>,
     add_hour: CachedStatement<'c>,
     outcome: ImportOutcome,
 }
@@ -155,6 +208,13 @@ struct Target {
     unit: i64,
     /// Time of the newest reading held before this file.
     newest_s: Option<i64>,
+}
+
+impl ImportOutcome {
+    /// Whether anything of the file was not held before.
+    fn is_new(&self) -> bool {
+        self.accepted + self.conflicts + self.not_read > 0
+    }
 }
 
 impl<'c> Intake<'c> {
@@ -169,25 +229,29 @@ impl<'c> Intake<'c> {
             held: connection.prepare_cached(
                 "SELECT value = ?3 AND unit = ?4 FROM reading WHERE channel = ?1 AND time_s = ?2",
             )?,
+            kept_aside: connection.prepare_cached(
+                "SELECT 1 FROM reading_conflict
+                 WHERE channel = ?1 AND time_s = ?2 AND value = ?3 AND unit = ?4
+                   AND file NOT IN (SELECT file FROM import_withdrawal)",
+            )?,
             keep_aside: connection.prepare_cached(
                 "INSERT INTO reading_conflict (channel, time_s, value, unit, file, line)
-                 VALUES (?1, ?2, ?3, ?4, ?5, ?6) ON CONFLICT DO NOTHING",
+                 VALUES (?1, ?2, ?3, ?4, ?5, ?6)",
             )?,
-            add_hour: connection.prepare_cached(
+            mark: connection.prepare_cached(
+                "INSERT INTO not_read VALUES (?1, ?2, ?3, ?4, ?5) ON CONFLICT DO NOTHING",
+            )?,
+            add_hour: connection.prepare_cached(&format!(
                 "INSERT INTO reading_hour VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8)
-                 ON CONFLICT DO UPDATE SET
-                 count = count + excluded.count,
-                 lowest_s = CASE WHEN excluded.lowest < lowest THEN excluded.lowest_s ELSE lowest_s END,
-                 lowest = min(lowest, excluded.lowest),
-                 highest_s = CASE WHEN excluded.highest > highest THEN excluded.highest_s ELSE highest_s END,
-                 highest = max(highest, excluded.highest)",
-            )?,
+                 ON CONFLICT DO UPDATE SET {ADD_TO_HOUR}"
+            ))?,
             outcome: ImportOutcome {
                 file,
                 known_already: false,
                 accepted: 0,
                 duplicates: 0,
                 conflicts: 0,
+                not_read: 0,
                 refused: Vec::new(),
                 late: None,
                 ahead: 0,
@@ -198,8 +262,8 @@ impl<'c> Intake<'c> {
     }
 
     fn take(&mut self, series: &RawSeries) -> Result<(), Fault> {
-        let channel = number(self.connection, "channel", "name", &series.channel)?;
-        let unit = number(self.connection, "unit", "word", series.unit.word())?;
+        let channel = channel_number(self.connection, &series.channel)?;
+        let unit = unit_number(self.connection, series.unit)?;
         let newest_s = self.connection.query_row(
             "SELECT max(time_s) FROM reading WHERE channel = ?1",
             [channel],
@@ -209,7 +273,7 @@ impl<'c> Intake<'c> {
         let mut hour: Option<HourSummary> = None;
         for reading in by_time(&series.readings).iter() {
             if let Some(reason) = why_refused(reading) {
-                let channel = series.channel.clone();
+                let channel = series.channel.to_string();
                 self.outcome.refused.push(RefusedReading { channel, line: reading.line, reason });
             } else if self.store(&target, reading)? {
                 self.note(&target, reading);
@@ -222,7 +286,13 @@ impl<'c> Intake<'c> {
                 }
             }
         }
-        self.add_hour(&target, hour)
+        self.add_hour(&target, hour)?;
+        for mark in series.not_read.iter().filter(|mark| is_instant(mark.time_s)) {
+            let RawNotRead { time_s, reason, line } = *mark;
+            let values = (channel, time_s, reason_word(reason), self.outcome.file, line);
+            self.outcome.not_read += self.mark.execute(values)? as u64;
+        }
+        Ok(())
     }
 
     /// Stores one reading; `false` when one is held already for its channel and time.
@@ -233,12 +303,11 @@ impl<'c> Intake<'c> {
             return Ok(true);
         }
         let same: bool = self.held.query_row((channel, time_s, value, unit), |row| row.get(0))?;
-        let new =
-            !same && self.keep_aside.execute((channel, time_s, value, unit, file, line))? == 1;
-        if new {
-            self.outcome.conflicts += 1;
-        } else {
+        if same || self.kept_aside.exists((channel, time_s, value, unit))? {
             self.outcome.duplicates += 1;
+        } else {
+            self.keep_aside.execute((channel, time_s, value, unit, file, line))?;
+            self.outcome.conflicts += 1;
         }
         Ok(false)
     }
@@ -299,32 +368,58 @@ fn why_refused(reading: &RawReading) -> Option<String> {
     }
 }
 
-/// Number of a word in a table of words; the word is added when it is new.
-fn number(connection: &Connection, table: &str, column: &str, word: &str) -> Result<i64, Fault> {
-    let find = format!("SELECT id FROM {table} WHERE {column} = ?1");
-    let found: Option<i64> =
-        connection.prepare_cached(&find)?.query_row([word], |row| row.get(0)).optional()?;
-    match found {
+fn channel_number(connection: &Connection, channel: &Channel) -> Result<i64, Fault> {
+    match number_of(connection, channel)? {
         Some(id) => Ok(id),
         None => {
-            connection.execute(&format!("INSERT INTO {table} ({column}) VALUES (?1)"), [word])?;
+            connection
+                .prepare_cached("INSERT INTO channel (kind, name, signal) VALUES (?1, ?2, ?3)")?
+                .execute(channel.words())?;
             Ok(connection.last_insert_rowid())
         }
     }
 }
 
+fn unit_number(connection: &Connection, unit: UnitName) -> Result<i64, Fault> {
+    let mut add =
+        connection.prepare_cached("INSERT INTO unit (word) VALUES (?1) ON CONFLICT DO NOTHING")?;
+    add.execute([unit.word()])?;
+    let mut find = connection.prepare_cached("SELECT id FROM unit WHERE word = ?1")?;
+    Ok(find.query_row([unit.word()], |row| row.get(0))?)
+}
+
+const MISSING: &str = "missing";
+const REFUSED: &str = "refused";
+
+fn reason_word(reason: NoValue) -> &'static str {
+    match reason {
+        NoValue::Missing => MISSING,
+        NoValue::Refused => REFUSED,
+    }
+}
+
+pub(super) fn reason_of(word: &str) -> Result<NoValue, Fault> {
+    match word {
+        MISSING => Ok(NoValue::Missing),
+        REFUSED => Ok(NoValue::Refused),
+        other => Err(Fault::Entry(format!("reason \"{other}\""))),
+    }
+}
+
 pub(super) fn imports(connection: &Connection) -> Result<Vec<Recorded<ImportedFile>>, Fault> {
-    let sql = format!(
-        "SELECT {HEAD}, name, hash, report, outcome
-         FROM import_file JOIN import_outcome ON file = id ORDER BY id"
-    );
-    entries(connection, &sql, [], |row| {
+    let sql =
+        "SELECT f.id, f.who, f.at_s, f.why, f.name, f.hash, f.report, outcome, w.who, w.at_s, w.why
+         FROM import_file AS f
+         JOIN import_outcome AS o ON o.file = f.id
+         LEFT JOIN import_withdrawal AS w ON w.file = f.id ORDER BY f.id";
+    entries(connection, sql, [], |row| {
         let (report, outcome): (String, String) = (row.get(6)?, row.get(7)?);
         Ok(ImportedFile {
             name: row.get(4)?,
             hash: row.get(5)?,
             report: serde_json::from_str(&report)?,
             outcome: serde_json::from_str(&outcome)?,
+            withdrawn: act(row, 8)?,
         })
     })
 }

@@ -22,6 +22,7 @@
 mod backup;
 mod decisions;
 mod error;
+mod exchange;
 mod history;
 mod import;
 mod limits;
@@ -31,21 +32,28 @@ mod readings;
 mod sites;
 mod sqlite;
 mod types;
+mod withdraw;
 
 pub use decisions::{Chain, Decision, DecisionBasis, DecisionEntry};
 pub use error::StoreError;
+pub use exchange::keep;
 pub use history::{
-    Baseline, BaselineValue, Correction, Event, Inhibition, LifeEvent, LifeKind, Lifted, Note,
+    Baseline, BaselineValue, Correction, Event, Inhibition, LifeEvent, LifeKind, Note,
 };
-pub use import::{ImportFile, ImportOutcome, ImportedFile, LateReadings, RefusedReading, hash_of};
+pub use import::{
+    ImportFile, ImportOutcome, ImportedFile, LateReadings, RawNotRead, RawReading, RawSeries,
+    RefusedReading, hash_of,
+};
 pub use limits::{InstrumentLimits, LimitSet, LimitVersion, NewLimits};
 pub use looser::{Loosening, loosenings};
 pub use open::SCHEMA;
-pub use readings::{
-    ChannelState, HourSummary, RawReading, RawSeries, ReadingConflict, StoredReading,
-};
+pub use readings::{Channel, ChannelState, HourSummary, ReadingConflict, StoredReading};
 pub use sqlite::SqliteStore;
-pub use types::{Change, Recorded};
+pub use types::{Act, Change, Recorded};
+pub use withdraw::Withdrawal;
+
+use crate::import::Imported;
+use crate::site::SiteFile;
 
 /// Where the readings and the history of a site are kept.
 ///
@@ -170,6 +178,13 @@ pub trait Store: Send {
         change: &Change<'_>,
     ) -> Result<ImportOutcome, StoreError>;
 
+    /// Withdraws a file: its readings are kept, but no longer count.
+    fn withdraw(&mut self, file: i64, change: &Change<'_>) -> Result<Withdrawal, StoreError>;
+
+    /// Readings in a window, both ends included, as the import of files gives them: in the units
+    /// of the instruments of `site`. The source of a reading is the number of its file.
+    fn imported(&self, site: &SiteFile, from_s: i64, to_s: i64) -> Result<Imported, StoreError>;
+
     /// The files imported so far, oldest first.
     fn imports(&self) -> Result<Vec<Recorded<ImportedFile>>, StoreError>;
 
@@ -177,19 +192,24 @@ pub trait Store: Send {
     fn channels(&self) -> Result<Vec<ChannelState>, StoreError>;
 
     /// The newest reading of a channel.
-    fn latest(&self, channel: &str) -> Result<Option<StoredReading>, StoreError>;
+    fn latest(&self, channel: &Channel) -> Result<Option<StoredReading>, StoreError>;
 
     /// Readings of a channel in a window, both ends included, by time.
     fn readings(
         &self,
-        channel: &str,
+        channel: &Channel,
         from_s: i64,
         to_s: i64,
     ) -> Result<Vec<StoredReading>, StoreError>;
 
     /// The hours of a window that have readings, each with its lowest and highest.
-    fn hours(&self, channel: &str, from_s: i64, to_s: i64) -> Result<Vec<HourSummary>, StoreError>;
+    fn hours(
+        &self,
+        channel: &Channel,
+        from_s: i64,
+        to_s: i64,
+    ) -> Result<Vec<HourSummary>, StoreError>;
 
     /// Readings that differ from the one held for the same channel and time.
-    fn conflicts(&self, channel: &str) -> Result<Vec<ReadingConflict>, StoreError>;
+    fn conflicts(&self, channel: &Channel) -> Result<Vec<ReadingConflict>, StoreError>;
 }

@@ -1,35 +1,77 @@
 //! Readings out of the store.
 
 use super::error::Fault;
+use super::import::RawReading;
+use crate::import::SeriesOf;
+use crate::site::Signal;
 use crate::site::reader::Choice;
 use crate::units::UnitName;
 use rusqlite::{Connection, OptionalExtension, Row};
 use serde::Serialize;
 use std::collections::BTreeMap;
+use std::fmt;
 
 /// Length of an hour, s.
-const HOUR_S: i64 = 3600;
+pub(super) const HOUR_S: i64 = 3600;
 
-/// Readings of one channel, as read from one file.
-#[derive(Debug, Clone, PartialEq)]
-pub struct RawSeries {
-    /// What gives them: an instrument, `barometer`, or a temperature.
-    pub channel: String,
-    /// Unit they are written in.
-    pub unit: UnitName,
-    /// The readings.
-    pub readings: Vec<RawReading>,
+/// What gives readings. An instrument whose raw digits and values both stand in files has two.
+#[derive(Debug, Clone, PartialEq, Eq, PartialOrd, Ord, Hash, Serialize)]
+pub struct Channel {
+    /// An instrument, or something that a reduction needs.
+    pub of: SeriesOf,
+    /// Raw digits or engineering values.
+    pub signal: Signal,
 }
 
-/// One reading, as read.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct RawReading {
-    /// When it was measured.
-    pub time_s: i64,
-    /// The value, in the unit of the series.
-    pub value: f64,
-    /// Line in the file.
-    pub line: u32,
+impl Channel {
+    /// The values of an instrument.
+    #[must_use]
+    pub fn instrument(id: &str) -> Self {
+        Self { of: SeriesOf::Instrument(id.to_owned()), signal: Signal::Engineering }
+    }
+
+    /// The raw digits of an instrument.
+    #[must_use]
+    pub fn digits(id: &str) -> Self {
+        Self { of: SeriesOf::Instrument(id.to_owned()), signal: Signal::Digits }
+    }
+
+    /// Something that is no instrument, such as `barometer`.
+    #[must_use]
+    pub fn other(name: &str) -> Self {
+        Self { of: SeriesOf::Channel(name.to_owned()), signal: Signal::Engineering }
+    }
+
+    /// Kind, name and signal, as the store has them.
+    pub(super) fn words(&self) -> (&'static str, &str, &'static str) {
+        let (kind, name) = match &self.of {
+            SeriesOf::Instrument(name) => ("instrument", name),
+            SeriesOf::Channel(name) => ("channel", name),
+        };
+        (kind, name, self.signal.word())
+    }
+
+    /// From kind, name and signal at a column on.
+    fn read(row: &Row<'_>, from: usize) -> Result<Self, Fault> {
+        let (kind, name): (String, String) = (row.get(from)?, row.get(from + 1)?);
+        let signal: String = row.get(from + 2)?;
+        let of = match kind.as_str() {
+            "instrument" => SeriesOf::Instrument(name),
+            _ => SeriesOf::Channel(name),
+        };
+        let signal =
+            if signal == Signal::Digits.word() { Signal::Digits } else { Signal::Engineering };
+        Ok(Self { of, signal })
+    }
+}
+
+impl fmt::Display for Channel {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self.signal {
+            Signal::Digits => write!(f, "{} (digits)", self.of.name()),
+            Signal::Engineering => f.write_str(self.of.name()),
+        }
+    }
 }
 
 /// A reading in the store.
@@ -59,8 +101,8 @@ pub struct ReadingConflict {
 /// What is held of a channel.
 #[derive(Debug, Clone, PartialEq, Serialize)]
 pub struct ChannelState {
-    /// Its name.
-    pub channel: String,
+    /// The channel.
+    pub channel: Channel,
     /// How many readings.
     pub readings: u64,
     /// Time of the first.
@@ -122,10 +164,10 @@ impl HourSummary {
 }
 
 /// The units by their numbers; they are few.
-struct Units(BTreeMap<i64, UnitName>);
+pub(super) struct Units(BTreeMap<i64, UnitName>);
 
 impl Units {
-    fn of(connection: &Connection) -> Result<Self, Fault> {
+    pub(super) fn of(connection: &Connection) -> Result<Self, Fault> {
         let mut statement = connection.prepare_cached("SELECT id, word FROM unit")?;
         let mut rows = statement.query([])?;
         let mut units = BTreeMap::new();
@@ -156,34 +198,61 @@ impl Units {
 
 const READING: &str = "time_s, value, unit, file, line";
 
-fn number_of(connection: &Connection, channel: &str) -> Result<Option<i64>, Fault> {
-    let mut statement = connection.prepare_cached("SELECT id FROM channel WHERE name = ?1")?;
-    Ok(statement.query_row([channel], |row| row.get(0)).optional()?)
+/// Number of a channel that has been imported.
+pub(super) fn number_of(connection: &Connection, channel: &Channel) -> Result<Option<i64>, Fault> {
+    let mut statement = connection
+        .prepare_cached("SELECT id FROM channel WHERE kind = ?1 AND name = ?2 AND signal = ?3")?;
+    Ok(statement.query_row(channel.words(), |row| row.get(0)).optional()?)
 }
 
-pub(super) fn in_window(
+/// Every channel that has been imported, by name.
+pub(super) fn all(connection: &Connection) -> Result<Vec<(i64, Channel)>, Fault> {
+    let mut statement = connection.prepare_cached(
+        "SELECT id, kind, name, signal FROM channel ORDER BY kind DESC, name, signal",
+    )?;
+    let mut rows = statement.query([])?;
+    let mut found = Vec::new();
+    while let Some(row) = rows.next()? {
+        found.push((row.get(0)?, Channel::read(row, 1)?));
+    }
+    Ok(found)
+}
+
+/// Gives each reading of a channel in a window to `each`, by time.
+pub(super) fn for_each(
     connection: &Connection,
-    channel: &str,
-    from_s: i64,
-    to_s: i64,
-) -> Result<Vec<StoredReading>, Fault> {
-    let Some(number) = number_of(connection, channel)? else { return Ok(Vec::new()) };
-    let units = Units::of(connection)?;
+    units: &Units,
+    (channel, from_s, to_s): (i64, i64, i64),
+    mut each: impl FnMut(StoredReading),
+) -> Result<(), Fault> {
     let mut statement = connection.prepare_cached(&format!(
         "SELECT {READING} FROM reading
          WHERE channel = ?1 AND time_s BETWEEN ?2 AND ?3 ORDER BY time_s"
     ))?;
-    let mut rows = statement.query((number, from_s, to_s))?;
-    let mut readings = Vec::new();
+    let mut rows = statement.query((channel, from_s, to_s))?;
     while let Some(row) = rows.next()? {
-        readings.push(units.reading(row, 0)?);
+        each(units.reading(row, 0)?);
+    }
+    Ok(())
+}
+
+pub(super) fn in_window(
+    connection: &Connection,
+    channel: &Channel,
+    from_s: i64,
+    to_s: i64,
+) -> Result<Vec<StoredReading>, Fault> {
+    let mut readings = Vec::new();
+    if let Some(number) = number_of(connection, channel)? {
+        let units = Units::of(connection)?;
+        for_each(connection, &units, (number, from_s, to_s), |reading| readings.push(reading))?;
     }
     Ok(readings)
 }
 
 pub(super) fn latest(
     connection: &Connection,
-    channel: &str,
+    channel: &Channel,
 ) -> Result<Option<StoredReading>, Fault> {
     let Some(number) = number_of(connection, channel)? else { return Ok(None) };
     let units = Units::of(connection)?;
@@ -195,18 +264,17 @@ pub(super) fn latest(
 }
 
 pub(super) fn channels(connection: &Connection) -> Result<Vec<ChannelState>, Fault> {
-    // Counted by hours, so that it does not take longer with every year.
+    // Counted by hours, so that it does not take longer with every reading.
     let mut statement = connection.prepare_cached(
-        "SELECT name, sum(count), (SELECT min(time_s) FROM reading WHERE channel = channel.id)
-         FROM channel JOIN reading_hour ON channel = channel.id GROUP BY channel.id ORDER BY name",
+        "SELECT (SELECT total(count) FROM reading_hour WHERE channel = ?1),
+                (SELECT min(time_s) FROM reading WHERE channel = ?1)",
     )?;
-    let mut rows = statement.query([])?;
     let mut states = Vec::new();
-    while let Some(row) = rows.next()? {
-        let (channel, count): (String, i64) = (row.get(0)?, row.get(1)?);
+    for (number, channel) in all(connection)? {
         if let Some(latest) = latest(connection, &channel)? {
-            let first_s = row.get(2)?;
-            states.push(ChannelState { channel, readings: count.unsigned_abs(), first_s, latest });
+            let (count, first_s): (f64, i64) =
+                statement.query_row([number], |row| Ok((row.get(0)?, row.get(1)?)))?;
+            states.push(ChannelState { channel, readings: count as u64, first_s, latest });
         }
     }
     Ok(states)
@@ -214,7 +282,7 @@ pub(super) fn channels(connection: &Connection) -> Result<Vec<ChannelState>, Fau
 
 pub(super) fn hours(
     connection: &Connection,
-    channel: &str,
+    channel: &Channel,
     from_s: i64,
     to_s: i64,
 ) -> Result<Vec<HourSummary>, Fault> {
@@ -243,17 +311,18 @@ pub(super) fn hours(
 
 pub(super) fn conflicts(
     connection: &Connection,
-    channel: &str,
+    channel: &Channel,
 ) -> Result<Vec<ReadingConflict>, Fault> {
     let units = Units::of(connection)?;
     let mut statement = connection.prepare_cached(
         "SELECT h.time_s, h.value, h.unit, h.file, h.line, o.time_s, o.value, o.unit, o.file, o.line
          FROM reading_conflict AS o
          JOIN reading AS h ON h.channel = o.channel AND h.time_s = o.time_s
-         JOIN channel ON channel.id = o.channel
-         WHERE channel.name = ?1 ORDER BY o.time_s, o.id",
+         WHERE o.channel = ?1 AND (h.value <> o.value OR h.unit <> o.unit)
+           AND o.file NOT IN (SELECT file FROM import_withdrawal)
+         ORDER BY o.time_s, o.id",
     )?;
-    let mut rows = statement.query([channel])?;
+    let mut rows = statement.query([number_of(connection, channel)?])?;
     let mut found = Vec::new();
     while let Some(row) = rows.next()? {
         found.push(ReadingConflict { held: units.reading(row, 0)?, other: units.reading(row, 5)? });

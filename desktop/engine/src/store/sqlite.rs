@@ -3,12 +3,15 @@
 use super::decisions::{self, Chain, Decision, DecisionBasis, DecisionEntry};
 use super::error::{Fault, StoreError};
 use super::history::{self, Baseline, Correction, Event, Inhibition, LifeEvent, Note};
-use super::import::{self, ImportFile, ImportOutcome, ImportedFile};
+use super::import::{self, ImportFile, ImportOutcome, ImportedFile, RawSeries};
 use super::limits::{self, LimitSet, LimitVersion, NewLimits};
 use super::looser::Loosening;
-use super::readings::{self, ChannelState, HourSummary, RawSeries, ReadingConflict, StoredReading};
+use super::readings::{self, Channel, ChannelState, HourSummary, ReadingConflict, StoredReading};
 use super::types::{Change, Recorded};
-use super::{Store, backup, open, sites};
+use super::withdraw::{self, Withdrawal};
+use super::{Store, backup, exchange, open, sites};
+use crate::import::Imported;
+use crate::site::SiteFile;
 use rusqlite::{Connection, TransactionBehavior};
 use std::path::{Path, PathBuf};
 use std::time::Duration;
@@ -250,6 +253,14 @@ impl Store for SqliteStore {
         })
     }
 
+    fn withdraw(&mut self, file: i64, change: &Change<'_>) -> Result<Withdrawal, StoreError> {
+        self.write(|connection| withdraw::withdraw(connection, file, change))
+    }
+
+    fn imported(&self, site: &SiteFile, from_s: i64, to_s: i64) -> Result<Imported, StoreError> {
+        self.read(|connection| exchange::imported(connection, site, from_s, to_s))
+    }
+
     fn imports(&self) -> Result<Vec<Recorded<ImportedFile>>, StoreError> {
         self.read(import::imports)
     }
@@ -258,24 +269,29 @@ impl Store for SqliteStore {
         self.read(readings::channels)
     }
 
-    fn latest(&self, channel: &str) -> Result<Option<StoredReading>, StoreError> {
+    fn latest(&self, channel: &Channel) -> Result<Option<StoredReading>, StoreError> {
         self.read(|connection| readings::latest(connection, channel))
     }
 
     fn readings(
         &self,
-        channel: &str,
+        channel: &Channel,
         from_s: i64,
         to_s: i64,
     ) -> Result<Vec<StoredReading>, StoreError> {
         self.read(|connection| readings::in_window(connection, channel, from_s, to_s))
     }
 
-    fn hours(&self, channel: &str, from_s: i64, to_s: i64) -> Result<Vec<HourSummary>, StoreError> {
+    fn hours(
+        &self,
+        channel: &Channel,
+        from_s: i64,
+        to_s: i64,
+    ) -> Result<Vec<HourSummary>, StoreError> {
         self.read(|connection| readings::hours(connection, channel, from_s, to_s))
     }
 
-    fn conflicts(&self, channel: &str) -> Result<Vec<ReadingConflict>, StoreError> {
+    fn conflicts(&self, channel: &Channel) -> Result<Vec<ReadingConflict>, StoreError> {
         self.read(|connection| readings::conflicts(connection, channel))
     }
 }
@@ -296,9 +312,10 @@ mod tests {
     ) -> Result<ImportOutcome, StoreError> {
         let reading = |i| RawReading { time_s: NOON_S + i, value: i as f64, line: 1 };
         let series = RawSeries {
-            channel: "P4".to_owned(),
+            channel: Channel::instrument("P4"),
             unit: UnitName::Kpa,
             readings: (0..readings).map(reading).collect(),
+            not_read: Vec::new(),
         };
         let (hash, report) = (hash_of(name.as_bytes()), serde_json::json!({}));
         let change = Change { who: "Ines Vale", at_s: NOON_S, why: "Morning round" };
@@ -317,7 +334,7 @@ mod tests {
         let error = import(&mut store, "b.csv", 100_000).unwrap_err();
         assert_eq!(error.code(), "disk-full");
         assert!(error.to_string().contains("make room"), "{error}");
-        assert_eq!(store.readings("P4", 0, i64::MAX).unwrap().len(), 1);
+        assert_eq!(store.readings(&Channel::instrument("P4"), 0, i64::MAX).unwrap().len(), 1);
         drop(store);
         let mut store = SqliteStore::open(&path, NOON_S).unwrap();
         assert_eq!(store.channels().unwrap()[0].readings, 1);

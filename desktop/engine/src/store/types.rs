@@ -21,6 +21,17 @@ pub struct Change<'a> {
     pub why: &'a str,
 }
 
+/// Who did something, when and why.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct Act {
+    /// By whom.
+    pub who: String,
+    /// When.
+    pub at_s: i64,
+    /// Why.
+    pub why: String,
+}
+
 /// An entry of the store.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize)]
 pub struct Recorded<T> {

@@ -1,7 +1,9 @@
 //! Files of readings into the store and out again.
 
 use crate::support::{Bench, NOON_S, bench, import, kpa, now, refused, series, values};
-use brimstead_engine::store::{ImportFile, LateReadings, RawReading, RawSeries, Store, hash_of};
+use brimstead_engine::store::{
+    Channel, ImportFile, LateReadings, RawReading, RawSeries, Store, hash_of,
+};
 use brimstead_engine::units::UnitName;
 use proptest::prelude::*;
 use serde_json::json;
@@ -20,7 +22,7 @@ fn readings_come_back_as_read_with_file_and_line() {
     assert_eq!((outcome.accepted, outcome.duplicates, outcome.conflicts), (3, 0, 0));
     assert_eq!((outcome.first_s, outcome.last_s), (Some(NOON_S), Some(NOON_S + 60)));
     assert_eq!((outcome.late, outcome.ahead, outcome.known_already), (None, 1, false));
-    let readings = store.readings("P4", NOON_S, NOON_S + 60).expect("readings");
+    let readings = store.readings(&Channel::digits("P4"), NOON_S, NOON_S + 60).expect("readings");
     assert_eq!(readings.len(), 2);
     assert_eq!((readings[1].value, readings[1].unit), (8801.5, UnitName::Digits));
     assert_eq!((readings[1].file, readings[1].line), (outcome.file, 3));
@@ -43,16 +45,20 @@ fn windows_include_both_ends_and_unknown_channels_are_empty() {
     let Bench { mut store, .. } = bench();
     import(&mut store, "a.csv", &[kpa("P4", &minutes(0, &[0.0, 1.0, 2.0, 3.0]))]).expect("import");
     let in_window = |from, to| -> Vec<f64> {
-        let readings = store.readings("P4", NOON_S + from, NOON_S + to).expect("readings");
+        let readings = store
+            .readings(&Channel::instrument("P4"), NOON_S + from, NOON_S + to)
+            .expect("readings");
         readings.iter().map(|reading| reading.value).collect()
     };
     assert_eq!(in_window(60, 120), [1.0, 2.0]);
     assert_eq!(in_window(61, 119), [0.0; 0]);
     assert_eq!(in_window(120, 60), [0.0; 0]);
-    assert!(store.readings("P5", NOON_S, NOON_S).expect("readings").is_empty());
-    assert!(store.latest("P5").expect("latest").is_none());
-    assert!(store.hours("P5", NOON_S, NOON_S).expect("hours").is_empty());
-    assert!(store.conflicts("P5").expect("conflicts").is_empty());
+    assert!(
+        store.readings(&Channel::instrument("P5"), NOON_S, NOON_S).expect("readings").is_empty()
+    );
+    assert!(store.latest(&Channel::instrument("P5")).expect("latest").is_none());
+    assert!(store.hours(&Channel::instrument("P5"), NOON_S, NOON_S).expect("hours").is_empty());
+    assert!(store.conflicts(&Channel::instrument("P5")).expect("conflicts").is_empty());
 }
 
 #[test]
@@ -99,7 +105,7 @@ fn late_readings_go_to_the_time_they_were_measured() {
     assert_eq!(outcome.late, Some(expected));
     let order: Vec<f64> = values(&store, "P4").into_iter().map(|(_, value)| value).collect();
     assert_eq!(order, [1.0, 4.0, 5.0, 9.0]);
-    assert_eq!(store.latest("P4").expect("latest").expect("one").value, 9.0);
+    assert_eq!(store.latest(&Channel::instrument("P4")).expect("latest").expect("one").value, 9.0);
 }
 
 #[test]
@@ -115,7 +121,7 @@ fn readings_that_differ_are_kept_aside_and_the_first_counts() {
     let psi = [series("P4", UnitName::Psi, &minutes(0, &[1.0]))];
     assert_eq!(import(&mut store, "c.csv", &psi).expect("import").conflicts, 1);
     assert_eq!(values(&store, "P4"), minutes(0, &[1.0, 2.0]));
-    let conflicts = store.conflicts("P4").expect("conflicts");
+    let conflicts = store.conflicts(&Channel::instrument("P4")).expect("conflicts");
     assert_eq!(conflicts.len(), 2);
     assert_eq!((conflicts[0].held.unit, conflicts[0].other.unit), (UnitName::Kpa, UnitName::Psi));
     assert_eq!((conflicts[1].held.value, conflicts[1].other.value), (2.0, 2.5));
@@ -177,7 +183,7 @@ fn channels_tell_how_much_and_how_new() {
     let states = store.channels().expect("channels");
     let shown: Vec<_> = states
         .iter()
-        .map(|state| (state.channel.as_str(), state.readings, state.first_s, state.latest.value))
+        .map(|state| (state.channel.of.name(), state.readings, state.first_s, state.latest.value))
         .collect();
     assert_eq!(shown, [("P4", 1, NOON_S, 3.0), ("P5", 2, NOON_S + 300, 2.0)]);
 }
@@ -193,9 +199,10 @@ fn as_file(given: &[Given]) -> Vec<RawSeries> {
         by_series.entry((channel, unit)).or_default().push(reading);
     }
     let series = |((channel, unit), readings)| RawSeries {
-        channel: if channel { "P4" } else { "P5" }.to_owned(),
+        channel: Channel::instrument(if channel { "P4" } else { "P5" }),
         unit: if unit { UnitName::Kpa } else { UnitName::Psi },
         readings,
+        not_read: Vec::new(),
     };
     by_series.into_iter().map(series).collect()
 }
@@ -211,7 +218,7 @@ proptest! {
             prop::collection::vec((any::<bool>(), 0..40i64, -3..3i8, any::<bool>()), 0..30), 1..5)
     ) {
         let Bench { mut store, .. } = bench();
-        let mut held: BTreeMap<(String, i64), (f64, UnitName)> = BTreeMap::new();
+        let mut held: BTreeMap<(Channel, i64), (f64, UnitName)> = BTreeMap::new();
         for (index, given) in files.iter().enumerate() {
             let file = as_file(given);
             let outcome = import(&mut store, &format!("{index}.csv"), &file).expect("import");
@@ -230,17 +237,17 @@ proptest! {
             let again = import(&mut store, &format!("{index}.csv"), &as_file(given)).expect("again");
             prop_assert_eq!((again.accepted, again.conflicts), (0, 0));
         }
-        for channel in ["P4", "P5"] {
-            let stored = store.readings(channel, 0, i64::MAX).expect("readings");
+        for channel in ["P4", "P5"].map(Channel::instrument) {
+            let stored = store.readings(&channel, 0, i64::MAX).expect("readings");
             let expected: Vec<_> = held
                 .iter()
-                .filter(|((name, _), _)| name == channel)
+                .filter(|((of, _), _)| *of == channel)
                 .map(|((_, time_s), &(value, unit))| (*time_s, value, unit))
                 .collect();
             let found: Vec<_> =
                 stored.iter().map(|reading| (reading.time_s, reading.value, reading.unit)).collect();
             prop_assert_eq!(&found, &expected);
-            for hour in store.hours(channel, 0, NOON_S * 2).expect("hours") {
+            for hour in store.hours(&channel, 0, NOON_S * 2).expect("hours") {
                 let inside: Vec<_> = expected
                     .iter()
                     .filter(|(time_s, _, unit)| time_s / 3600 * 3600 == hour.start_s && *unit == hour.unit)

@@ -1,6 +1,7 @@
 //! The store, from outside.
 
 mod decisions;
+mod exchange;
 mod history;
 mod import;
 mod limits;
@@ -8,3 +9,4 @@ mod open;
 mod processes;
 mod sites;
 mod support;
+mod withdraw;

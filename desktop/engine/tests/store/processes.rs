@@ -2,7 +2,7 @@
 //! this test program itself, started again to run one of the parts below.
 
 use crate::support::{Bench, NOON_S, at, bench, import, kpa, refused, values};
-use brimstead_engine::store::{Decision, DecisionBasis, SqliteStore, Store};
+use brimstead_engine::store::{Channel, Decision, DecisionBasis, SqliteStore, Store};
 use rand_chacha::ChaCha8Rng;
 use rand_chacha::rand_core::{Rng, SeedableRng};
 use std::io::{BufRead, BufReader};
@@ -121,7 +121,7 @@ fn two_programs_on_one_store_lose_and_double_nothing() {
     for channel in ["S1", "P4", "P5"] {
         let expected: Vec<(i64, f64)> = (0..FILES_EACH).flat_map(file).collect();
         assert_eq!(values(&store, channel), expected, "{channel}");
-        assert!(store.conflicts(channel).expect("conflicts").is_empty());
+        assert!(store.conflicts(&Channel::instrument(channel)).expect("conflicts").is_empty());
     }
     assert_eq!(store.decisions().expect("decisions").len() as i64, 2 * FILES_EACH);
     let chain = store.verify_chain().expect("chain");

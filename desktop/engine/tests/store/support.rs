@@ -1,8 +1,8 @@
 //! What the tests of the store share. Site and people are invented.
 
 use brimstead_engine::store::{
-    Change, ImportFile, ImportOutcome, RawReading, RawSeries, SqliteStore, Store, StoreError,
-    hash_of,
+    Change, Channel, ImportFile, ImportOutcome, RawReading, RawSeries, SqliteStore, Store,
+    StoreError, hash_of,
 };
 use brimstead_engine::units::UnitName;
 use serde_json::{Value, json};
@@ -50,11 +50,20 @@ pub fn series(channel: &str, unit: UnitName, readings: &[(i64, f64)]) -> RawSeri
         line: index as u32 + 2,
     };
     let readings = readings.iter().enumerate().map(with_line).collect();
-    RawSeries { channel: channel.to_owned(), unit, readings }
+    let channel = match (channel, unit) {
+        ("barometer", _) => Channel::other(channel),
+        (_, UnitName::Digits) => Channel::digits(channel),
+        _ => Channel::instrument(channel),
+    };
+    RawSeries { channel, unit, readings, not_read: Vec::new() }
 }
 
 pub fn kpa(channel: &str, readings: &[(i64, f64)]) -> RawSeries {
     series(channel, UnitName::Kpa, readings)
+}
+
+pub fn p4() -> Channel {
+    Channel::instrument("P4")
 }
 
 /// Imports under a name; the name stands for the bytes of the file.
@@ -69,7 +78,8 @@ pub fn import(
 }
 
 pub fn values(store: &SqliteStore, channel: &str) -> Vec<(i64, f64)> {
-    let readings = store.readings(channel, i64::MIN, i64::MAX).expect("readings");
+    let readings =
+        store.readings(&Channel::instrument(channel), i64::MIN, i64::MAX).expect("readings");
     readings.iter().map(|reading| (reading.time_s, reading.value)).collect()
 }
 

@@ -148,10 +148,14 @@ CREATE TABLE import_outcome (
     outcome TEXT NOT NULL
 ) STRICT;
 
--- Whatever gives readings: an instrument, the barometer, a temperature.
+-- Whatever gives readings. An instrument whose raw digits and values both stand in files has two
+-- channels; a channel that is no instrument is the barometer or a temperature.
 CREATE TABLE channel (
     id INTEGER PRIMARY KEY,
-    name TEXT NOT NULL UNIQUE
+    kind TEXT NOT NULL CHECK (kind IN ('instrument', 'channel')),
+    name TEXT NOT NULL,
+    signal TEXT NOT NULL CHECK (signal IN ('digits', 'engineering')),
+    UNIQUE (kind, name, signal)
 ) STRICT;
 
 CREATE TABLE unit (
@@ -170,6 +174,16 @@ CREATE TABLE reading (
     PRIMARY KEY (channel, time_s)
 ) STRICT, WITHOUT ROWID;
 
+-- Times at which a row stood in a file but no value.
+CREATE TABLE not_read (
+    channel INTEGER NOT NULL REFERENCES channel (id),
+    time_s INTEGER NOT NULL,
+    reason TEXT NOT NULL CHECK (reason IN ('missing', 'refused')),
+    file INTEGER NOT NULL REFERENCES import_file (id),
+    line INTEGER NOT NULL,
+    PRIMARY KEY (channel, time_s)
+) STRICT, WITHOUT ROWID;
+
 -- Readings that differ from one held already for the same channel and time.
 CREATE TABLE reading_conflict (
     id INTEGER PRIMARY KEY,
@@ -180,9 +194,39 @@ CREATE TABLE reading_conflict (
     file INTEGER NOT NULL REFERENCES import_file (id),
     line INTEGER NOT NULL
 ) STRICT;
-CREATE UNIQUE INDEX reading_conflict_once ON reading_conflict (channel, time_s, value, unit);
+CREATE INDEX reading_conflict_by_time ON reading_conflict (channel, time_s);
 
--- What is written stays: a row is added, never changed and never taken away.
+-- A file whose readings no longer count, for a reason: the wrong unit was confirmed, say.
+CREATE TABLE import_withdrawal (
+    id INTEGER PRIMARY KEY,
+    who TEXT NOT NULL,
+    at_s INTEGER NOT NULL,
+    why TEXT NOT NULL,
+    file INTEGER NOT NULL UNIQUE REFERENCES import_file (id)
+) STRICT;
+
+-- Where the readings of such a file are kept, and its marks of times without a value.
+CREATE TABLE withdrawn_reading (
+    channel INTEGER NOT NULL REFERENCES channel (id),
+    time_s INTEGER NOT NULL,
+    value REAL NOT NULL,
+    unit INTEGER NOT NULL REFERENCES unit (id),
+    file INTEGER NOT NULL REFERENCES import_withdrawal (file),
+    line INTEGER NOT NULL,
+    PRIMARY KEY (file, channel, time_s)
+) STRICT, WITHOUT ROWID;
+
+CREATE TABLE withdrawn_not_read (
+    channel INTEGER NOT NULL REFERENCES channel (id),
+    time_s INTEGER NOT NULL,
+    reason TEXT NOT NULL,
+    file INTEGER NOT NULL REFERENCES import_withdrawal (file),
+    line INTEGER NOT NULL,
+    PRIMARY KEY (file, channel, time_s)
+) STRICT, WITHOUT ROWID;
+
+-- What is written stays: a row is added, never changed and never taken away. Readings leave their
+-- table only for the one of those withdrawn.
 CREATE TRIGGER site_version_no_update BEFORE UPDATE ON site_version BEGIN SELECT RAISE(ABORT, 'site_version is history and is only added to'); END;
 CREATE TRIGGER site_version_no_delete BEFORE DELETE ON site_version BEGIN SELECT RAISE(ABORT, 'site_version is history and is only added to'); END;
 CREATE TRIGGER instrument_no_update BEFORE UPDATE ON instrument BEGIN SELECT RAISE(ABORT, 'instrument is history and is only added to'); END;
@@ -218,6 +262,18 @@ CREATE TRIGGER channel_no_delete BEFORE DELETE ON channel BEGIN SELECT RAISE(ABO
 CREATE TRIGGER unit_no_update BEFORE UPDATE ON unit BEGIN SELECT RAISE(ABORT, 'unit is history and is only added to'); END;
 CREATE TRIGGER unit_no_delete BEFORE DELETE ON unit BEGIN SELECT RAISE(ABORT, 'unit is history and is only added to'); END;
 CREATE TRIGGER reading_no_update BEFORE UPDATE ON reading BEGIN SELECT RAISE(ABORT, 'reading is history and is only added to'); END;
-CREATE TRIGGER reading_no_delete BEFORE DELETE ON reading BEGIN SELECT RAISE(ABORT, 'reading is history and is only added to'); END;
+CREATE TRIGGER reading_no_delete BEFORE DELETE ON reading WHEN NOT EXISTS (
+    SELECT 1 FROM withdrawn_reading WHERE file = OLD.file AND channel = OLD.channel AND time_s = OLD.time_s AND value = OLD.value AND unit = OLD.unit AND line = OLD.line
+) BEGIN SELECT RAISE(ABORT, 'reading is history and is only added to'); END;
+CREATE TRIGGER not_read_no_update BEFORE UPDATE ON not_read BEGIN SELECT RAISE(ABORT, 'not_read is history and is only added to'); END;
+CREATE TRIGGER not_read_no_delete BEFORE DELETE ON not_read WHEN NOT EXISTS (
+    SELECT 1 FROM withdrawn_not_read WHERE file = OLD.file AND channel = OLD.channel AND time_s = OLD.time_s AND reason = OLD.reason AND line = OLD.line
+) BEGIN SELECT RAISE(ABORT, 'not_read is history and is only added to'); END;
 CREATE TRIGGER reading_conflict_no_update BEFORE UPDATE ON reading_conflict BEGIN SELECT RAISE(ABORT, 'reading_conflict is history and is only added to'); END;
 CREATE TRIGGER reading_conflict_no_delete BEFORE DELETE ON reading_conflict BEGIN SELECT RAISE(ABORT, 'reading_conflict is history and is only added to'); END;
+CREATE TRIGGER import_withdrawal_no_update BEFORE UPDATE ON import_withdrawal BEGIN SELECT RAISE(ABORT, 'import_withdrawal is history and is only added to'); END;
+CREATE TRIGGER import_withdrawal_no_delete BEFORE DELETE ON import_withdrawal BEGIN SELECT RAISE(ABORT, 'import_withdrawal is history and is only added to'); END;
+CREATE TRIGGER withdrawn_reading_no_update BEFORE UPDATE ON withdrawn_reading BEGIN SELECT RAISE(ABORT, 'withdrawn_reading is history and is only added to'); END;
+CREATE TRIGGER withdrawn_reading_no_delete BEFORE DELETE ON withdrawn_reading BEGIN SELECT RAISE(ABORT, 'withdrawn_reading is history and is only added to'); END;
+CREATE TRIGGER withdrawn_not_read_no_update BEFORE UPDATE ON withdrawn_not_read BEGIN SELECT RAISE(ABORT, 'withdrawn_not_read is history and is only added to'); END;
+CREATE TRIGGER withdrawn_not_read_no_delete BEFORE DELETE ON withdrawn_not_read BEGIN SELECT RAISE(ABORT, 'withdrawn_not_read is history and is only added to'); END;
