@@ -15,3 +15,4 @@ pub mod site;
 pub mod store;
 pub mod time;
 pub mod units;
+pub mod window;
