@@ -13,7 +13,7 @@ mod reference_table;
 mod walking_column;
 
 use brimstead_core::consolidation::terzaghi::{
-    Drainage, InitialShape, degree_of_consolidation, isochrone,
+    Drainage, InitialShape, degree_of_consolidation, isochrone, ramp_mean_excess,
 };
 use brimstead_core::consolidation::{Boundary, Column, ColumnLayer, DrainPattern, Drains, Loading};
 use core::f64::consts::PI;
@@ -302,6 +302,28 @@ fn a_free_draining_layer_drains_its_neighbours_and_holds_nothing() {
     assert_eq!(walk.excess_at(4.5), 0.0);
     let balance = walk.balance();
     assert!(balance.layers_m > 0.0 && balance.top_m > 0.0 && balance.base_m > 0.0);
+}
+
+/// A metre of fast clay below a seam and ten of slow clay: the step that suits the slow one must
+/// not blur the fast one. What is left is the width of its cells.
+#[test]
+fn a_ramp_on_a_thin_fast_layer_beside_a_thick_slow_one_follows_olson() {
+    let seam = ColumnLayer { drained: true, ..clay(0.5, 10.0, 1.0) };
+    let ground = [clay(10.0, 0.002, 2e-6), seam, clay(1.0, 0.02, 2e-5)];
+    let mut walk = Walk::new(&column(&ground, Boundary::Drained, None));
+    let path_m = 0.5;
+    for (days, step_s) in [(5.0, 5.0 * DAY_S), (10.0, 5.0 * DAY_S), (15.0, 5.0 * DAY_S)] {
+        walk.ramp_until(days * DAY_S, step_s, |t_s| 100.0 * (t_s / (10.0 * DAY_S)).min(1.0));
+        let t = |days: f64| 0.02 * days / (path_m * path_m);
+        let layers: Vec<usize> = walk.stepper.layers().collect();
+        let mut held = 0.0;
+        let thicknesses = walk.stepper.thicknesses_m().zip(walk.state.excess_kpa);
+        for ((thickness_m, excess_kpa), layer) in thicknesses.zip(layers) {
+            held += if layer == 2 { thickness_m * excess_kpa } else { 0.0 };
+        }
+        let exact = 100.0 * ramp_mean_excess(t(days), t(10.0)).unwrap();
+        assert!((held - exact).abs() < 0.3, "{held} for {exact} after {days} days");
+    }
 }
 
 /// Column, load and drains of `tests/oracle/consolidation_column.py`, which solves the same

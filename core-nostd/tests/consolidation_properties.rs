@@ -138,9 +138,9 @@ proptest! {
             walk.try_advance(Loading::Ramp(&[change; CELLS]), DAY_S).unwrap();
             load_kpa += change;
             for excess in walk.state.excess_kpa {
-                // Two implicit stages overshoot zero by a little where a cell empties within a
-                // step.
-                prop_assert!((-0.05 * load_kpa..=load_kpa * (1.0 + 1e-12)).contains(&excess));
+                // A thin fast layer in which a step is seven times the relaxation time passes
+                // nothing by a fifth of what it held, which is a seventh of the step's load.
+                prop_assert!((-0.1 * load_kpa..=load_kpa * (1.0 + 1e-12)).contains(&excess));
             }
         }
     }

@@ -19,7 +19,7 @@
 //! with a, b = min(2.2, 0.55 ln(cells)) at a drained top, base (the cells of the stack, or twice as
 //! many if it drains at one end) and 0 at a closed one: the end cells of one uniform layer over 60
 //! cells are 21 times thinner than the widest ones. The share of s that falls into a layer is its claim to
-//! cells; stacks share by drained ends and the root of thickness. Each layer has at least three
+//! cells; stacks share by drained ends and the cube root of thickness. Each layer has at least three
 //! cells (a free-draining one two); each further cell goes to the largest claim per cell already
 //! given.
 
@@ -190,7 +190,7 @@ impl<'a> Stack<'a> {
 
     /// Claim to cells of the whole stack.
     fn claim(&self, whole_m: f64) -> f64 {
-        self.drained_ends() * libm::sqrt(self.thickness_m / whole_m)
+        self.drained_ends() * libm::cbrt(self.thickness_m / whole_m)
     }
 
     /// Crowding for a stack of about `cells` cells.

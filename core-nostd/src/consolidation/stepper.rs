@@ -38,9 +38,9 @@ use core::f64::consts::{FRAC_1_SQRT_2, SQRT_2};
 const STAGE: f64 = 1.0 - FRAC_1_SQRT_2;
 /// First substep after a jump, as a share of the shortest diffusion time of a cell.
 const FIRST_OF_CELL: f64 = 0.1;
-/// First substep after a change in the rate of loading, as a share of the diffusion time of the
-/// whole column: a front of 1/100 of it.
-const KINK_OF_COLUMN: f64 = 1e-4;
+/// First substep after a change in the rate of loading, as a share of the diffusion time through
+/// the fastest stack of layers between free-draining ones: a front of 1/100 of it.
+const KINK_OF_STACK: f64 = 1e-4;
 /// The same limits as shares of the time in which drains take 1/e.
 const FIRST_OF_DRAINS: f64 = 0.02;
 const KINK_OF_DRAINS: f64 = 0.1;
@@ -268,16 +268,7 @@ impl<const CELLS: usize> Stepper<CELLS> {
         if let Some(last) = self.leak.last_mut() {
             *last += self.base_leak;
         }
-        let mut root_time = 0.0;
-        for (cell, storage) in self.cells.iter().zip(&self.storage_m_per_kpa) {
-            let Some(layer) = layers.get(cell.layer) else { continue };
-            if *storage > 0.0 {
-                let time_s = cell.thickness_m * cell.thickness_m / layer.cv_m2_per_s;
-                self.pace.first_s = self.pace.first_s.min(FIRST_OF_CELL * time_s);
-                root_time += libm::sqrt(time_s);
-            }
-        }
-        self.pace.kink_s = self.pace.kink_s.min(KINK_OF_COLUMN * root_time * root_time);
+        self.limit_steps(layers);
         self.mark = mark_of(
             self.storage_m_per_kpa
                 .iter()
@@ -285,6 +276,26 @@ impl<const CELLS: usize> Stepper<CELLS> {
                 .chain(&self.leak)
                 .chain(&self.half_cell_m_per_s_kpa),
         );
+    }
+
+    /// Limits of substeps: the shortest diffusion time of a cell, and that of the fastest stack
+    /// of cells between free-draining ones.
+    fn limit_steps(&mut self, layers: &[ColumnLayer]) {
+        let mut root_time = 0.0;
+        for (cell, storage) in self.cells.iter().zip(&self.storage_m_per_kpa) {
+            let Some(layer) = layers.get(cell.layer) else { continue };
+            if *storage > 0.0 {
+                let time_s = cell.thickness_m * cell.thickness_m / layer.cv_m2_per_s;
+                self.pace.first_s = self.pace.first_s.min(FIRST_OF_CELL * time_s);
+                root_time += libm::sqrt(time_s);
+            } else if root_time > 0.0 {
+                self.pace.kink_s = self.pace.kink_s.min(KINK_OF_STACK * root_time * root_time);
+                root_time = 0.0;
+            }
+        }
+        if root_time > 0.0 {
+            self.pace.kink_s = self.pace.kink_s.min(KINK_OF_STACK * root_time * root_time);
+        }
     }
 
     /// A column without excess pore pressure.
