@@ -14,11 +14,12 @@ mod walking_column;
 use brimstead_core::consolidation::terzaghi::{
     Drainage, InitialShape, degree_of_consolidation, isochrone, ramp_degree_of_consolidation,
 };
-use brimstead_core::consolidation::{
-    Answers, Boundary, Column, ColumnLayer, DrainPattern, Drains, Error, History, batch,
-};
+use brimstead_core::consolidation::{Answers, Boundary, Column, Error, History, batch};
 use reference_table::{Worst, time};
-use walking_column::{clay, column, cv_per_day};
+use walking_column::{
+    STAGED_DEPTHS, STAGES, clay, column, combined_clay, combined_drains, partial_drains,
+    partly_drained_layers, staged_clay,
+};
 
 struct Answered {
     excess_kpa: Vec<f64>,
@@ -96,31 +97,16 @@ fn layers_follow_the_exact_modes_to_a_few_millionths() {
 fn stages_with_a_lowering_follow_the_exact_table() {
     let rows = time("t02_staged.csv");
     let days: Vec<f64> = rows.iter().map(|row| row.number("t_day")).collect();
-    let load = [
-        (0.0, 0.0),
-        (10.0, 40.0),
-        (40.0, 40.0),
-        (50.0, 80.0),
-        (90.0, 80.0),
-        (100.0, 120.0),
-        (150.0, 120.0),
-        (160.0, 160.0),
-        (220.0, 160.0),
-        (225.0, 100.0),
-        (260.0, 100.0),
-        (270.0, 180.0),
-    ];
-    let layers = [clay(3.0, 0.012, 0.012 * 0.0006 * 9.81)];
+    let layers = [staged_clay()];
     let ground = column(&layers, Boundary::Closed, None);
-    let answered = answer(ground, &[], &load, &days, &[0.75, 1.5, 2.25, 3.0]).unwrap();
+    let depths = STAGED_DEPTHS.map(|depth| depth.1);
+    let answered = answer(ground, &[], &STAGES, &days, &depths).unwrap();
     let mut worst = Worst::default();
     for (index, row) in rows.iter().enumerate() {
         let place = || format!("day {}", days[index]);
         // Pressure and millimetres alike.
         worst.take(1000.0 * answered.settlement_m[index], row.number("settlement_mm"), place);
-        for (depth, column) in
-            ["u_Z0.25_kPa", "u_Z0.5_kPa", "u_Z0.75_kPa", "u_Z1_kPa"].iter().enumerate()
-        {
+        for (depth, (column, _)) in STAGED_DEPTHS.iter().enumerate() {
             worst.take(answered.excess(index, depth), row.number(column), place);
         }
         let degree = answered.degree(index);
@@ -158,20 +144,9 @@ fn one_layer_follows_the_series() {
 
 #[test]
 fn drains_follow_carrillo_and_the_method_of_lines() {
-    let drains = Drains {
-        pattern: DrainPattern::Triangular,
-        spacing_m: 1.5,
-        equivalent_diameter_m: 0.0662,
-        smear_ratio: 2.0,
-        permeability_ratio_h_over_s: 3.0,
-        discharge_m3_per_s: None,
-        top_m: 0.0,
-        base_m: 8.0,
-        length_m: 8.0,
-    };
+    let (layers, drains) = ([combined_clay()], combined_drains());
     let rows = time("t04_combined.csv");
     let days: Vec<f64> = rows.iter().map(|row| row.number("t_day")).collect();
-    let layers = [ColumnLayer { ch_m2_per_s: cv_per_day(0.016), ..clay(8.0, 0.008, 8e-6) }];
     let ground = column(&layers, Boundary::Closed, Some(&drains));
     let jump = answer(ground, &[], &[(0.0, 1.0)], &days, &[]).unwrap();
     let ramp = answer(ground, &[], &[(0.0, 0.0), (60.0, 1.0)], &days, &[]).unwrap();
@@ -187,22 +162,7 @@ fn drains_follow_carrillo_and_the_method_of_lines() {
 /// `tests/oracle/consolidation_column.py`: layers, drains to part depth, well resistance.
 #[test]
 fn partly_drained_layers_follow_the_method_of_lines() {
-    let layers = [(1.5, 0.03, 6e-5), (4.0, 0.006, 8e-6), (2.5, 0.05, 3e-4), (6.0, 0.01, 1.2e-5)]
-        .map(|(thickness_m, cv, k)| ColumnLayer {
-            ch_m2_per_s: cv_per_day(2.0 * cv),
-            ..clay(thickness_m, cv, k)
-        });
-    let drains = Drains {
-        pattern: DrainPattern::Triangular,
-        spacing_m: 1.5,
-        equivalent_diameter_m: 0.0662,
-        smear_ratio: 2.0,
-        permeability_ratio_h_over_s: 3.0,
-        discharge_m3_per_s: Some(2e-7),
-        top_m: 0.5,
-        base_m: 9.3,
-        length_m: 8.8,
-    };
+    let (layers, drains) = (partly_drained_layers(), partial_drains());
     let rows = time("consolidation_method_of_lines.csv");
     let mut days: Vec<f64> = rows.iter().map(|row| row.number("t_day")).collect();
     days.dedup();

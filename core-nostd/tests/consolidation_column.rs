@@ -15,10 +15,16 @@ mod walking_column;
 use brimstead_core::consolidation::terzaghi::{
     Drainage, InitialShape, degree_of_consolidation, isochrone, ramp_mean_excess,
 };
-use brimstead_core::consolidation::{Boundary, Column, ColumnLayer, DrainPattern, Drains, Loading};
+use brimstead_core::consolidation::{
+    Boundary, Column, ColumnLayer, DrainPattern, Drains, Loading, Seen,
+};
+use brimstead_core::working::{Step, Working};
 use core::f64::consts::PI;
 use reference_table::{Worst, time};
-use walking_column::{CELLS, DAY_S, HOUR_S, Walk, clay, column, cv_per_day};
+use walking_column::{
+    CELLS, DAY_S, HOUR_S, STAGED_DEPTHS, STAGES, Walk, clay, column, combined_clay,
+    combined_drains, partial_drains, partly_drained_layers, staged_clay,
+};
 
 /// Steps that the logger and the office take, and one call from one time to the next.
 const STEPS_S: [f64; 3] = [HOUR_S, DAY_S, 1e10];
@@ -115,35 +121,22 @@ fn ramps_follow_the_exact_table() {
     }
 }
 
-/// Load of `t02_staged.csv`, kPa by day.
-const STAGES: [(f64, f64); 13] = [
-    (0.0, 0.0),
-    (10.0, 40.0),
-    (40.0, 40.0),
-    (50.0, 80.0),
-    (90.0, 80.0),
-    (100.0, 120.0),
-    (150.0, 120.0),
-    (160.0, 160.0),
-    (220.0, 160.0),
-    (225.0, 100.0),
-    (260.0, 100.0),
-    (270.0, 180.0),
-    (1000.0, 180.0),
-];
-
 fn staged_load_kpa(t_s: f64) -> f64 {
     let day = t_s / DAY_S;
-    let after = STAGES.iter().position(|stage| stage.0 >= day - 1e-9).unwrap_or(STAGES.len() - 1);
-    let (from, to) = (STAGES[after.max(1) - 1], STAGES[after.max(1)]);
-    from.1 + (to.1 - from.1) * ((day - from.0) / (to.0 - from.0)).min(1.0)
+    match STAGES.iter().position(|stage| stage.0 >= day - 1e-9) {
+        Some(0) => 0.0,
+        Some(after) => {
+            let (from, to) = (STAGES[after - 1], STAGES[after]);
+            from.1 + (to.1 - from.1) * ((day - from.0) / (to.0 - from.0)).min(1.0)
+        }
+        None => STAGES[STAGES.len() - 1].1,
+    }
 }
 
 #[test]
 fn a_filling_in_stages_with_a_lowering_follows_the_exact_table() {
-    let staged = clay(3.0, 0.012, 0.012 * 0.0006 * 9.81);
     for step_s in [HOUR_S, DAY_S] {
-        let mut walk = Walk::new(&column(&[staged], Boundary::Closed, None));
+        let mut walk = Walk::new(&column(&[staged_clay()], Boundary::Closed, None));
         let mut degrees = Worst::default();
         let mut pressures = Worst::default();
         for row in time("t02_staged.csv") {
@@ -151,12 +144,7 @@ fn a_filling_in_stages_with_a_lowering_follows_the_exact_table() {
             let degree = walk.settlement_m() / (walk.settlement_per_kpa_m() * 180.0);
             let place = || format!("day {} step {step_s}", row.number("t_day"));
             degrees.take(degree, row.number("U_ref_180kPa"), place);
-            for (column, depth_m) in [
-                ("u_Z0.25_kPa", 0.75),
-                ("u_Z0.5_kPa", 1.5),
-                ("u_Z0.75_kPa", 2.25),
-                ("u_Z1_kPa", 3.0),
-            ] {
+            for (column, depth_m) in STAGED_DEPTHS {
                 pressures.take(walk.excess_at(depth_m), row.number(column), place);
             }
         }
@@ -202,26 +190,10 @@ fn layers_follow_the_exact_modes() {
     }
 }
 
-/// The drains of `t04_combined.csv`, through the whole layer.
-fn combined_drains() -> Drains {
-    Drains {
-        pattern: DrainPattern::Triangular,
-        spacing_m: 1.5,
-        equivalent_diameter_m: 0.0662,
-        smear_ratio: 2.0,
-        permeability_ratio_h_over_s: 3.0,
-        discharge_m3_per_s: None,
-        top_m: 0.0,
-        base_m: 8.0,
-        length_m: 8.0,
-    }
-}
-
 #[test]
 fn vertical_and_radial_flow_together_follow_carrillo_for_a_jump_and_its_integral_for_a_ramp() {
-    let layer = ColumnLayer { ch_m2_per_s: cv_per_day(0.016), ..clay(8.0, 0.008, 8e-6) };
     let drains = combined_drains();
-    let ground = [layer];
+    let ground = [combined_clay()];
     let fill = |t_s: f64| (t_s / (60.0 * DAY_S)).min(1.0);
     for step_s in [HOUR_S, DAY_S] {
         let mut jump = Walk::new(&column(&ground, Boundary::Closed, Some(&drains)));
@@ -330,17 +302,7 @@ fn a_ramp_on_a_thin_fast_layer_beside_a_thick_slow_one_follows_olson() {
 /// equation by the method of lines on 3000 equal cells with scipy.
 #[test]
 fn layers_with_drains_to_part_depth_follow_the_method_of_lines() {
-    let layers = layered("B")
-        .iter()
-        .map(|layer| ColumnLayer { ch_m2_per_s: 2.0 * layer.cv_m2_per_s, ..*layer })
-        .collect::<Vec<_>>();
-    let drains = Drains {
-        discharge_m3_per_s: Some(2e-7),
-        top_m: 0.5,
-        base_m: 9.3,
-        length_m: 8.8,
-        ..combined_drains()
-    };
+    let (layers, drains) = (partly_drained_layers(), partial_drains());
     let fill = |t_s: f64| 120.0 * (t_s / (20.0 * DAY_S)).min(1.0);
     let mut walk = Walk::new(&column(&layers, Boundary::Closed, Some(&drains)));
     walk.influence_by(|z_m| 1.0 - 0.03 * z_m);
@@ -414,4 +376,51 @@ fn a_refused_step_leaves_the_state_as_it_was() {
     walk.state.excess_kpa[3] = f64::INFINITY;
     assert!(walk.try_advance(Loading::Hold, DAY_S).is_err(), "a state that is not finite");
     assert!(walk.stepper.excess_at_kpa(&before, 10.1).is_err(), "below the column");
+}
+
+/// Each line of the trail by its name.
+struct Trail(Vec<(String, f64, Vec<f64>)>);
+
+impl Working for Trail {
+    fn step(&mut self, step: Step<'_>) {
+        let inputs = step.inputs.iter().map(|input| input.1).collect();
+        self.0.push((step.name.to_owned(), step.value, inputs));
+    }
+}
+
+impl Trail {
+    fn value(&self, name: &str) -> f64 {
+        self.0.iter().find(|step| step.0 == name).unwrap_or_else(|| panic!("no {name}")).1
+    }
+}
+
+/// The numbers of `t04_combined.csv`: mu 3.8035, 8 ch/(De^2 mu) 0.013566 per day.
+#[test]
+fn the_trail_of_a_column_can_be_followed_by_hand() {
+    let (ground, drains) = ([combined_clay()], combined_drains());
+    let ground = column(&ground, Boundary::Closed, Some(&drains));
+    let mut walk = Walk::new(&ground);
+    walk.jump_by(|_| 1.0);
+    walk.hold_until(90.0 * DAY_S, DAY_S);
+    let mut trail = Trail(Vec::new());
+    let seen = Seen {
+        column: &ground,
+        state: &walk.state,
+        applied_kpa: &walk.influence,
+        elapsed_s: 90.0 * DAY_S,
+    };
+    walk.stepper.describe_at(&seen, 3.0, &mut trail).unwrap();
+    let near = |name: &str, want: f64, tolerance: f64| {
+        let got = trail.value(name);
+        assert!((got - want).abs() <= tolerance * want, "{name}: {got}, want {want}");
+    };
+    near("mu of the drains, smear included", 3.80353331850825, 1e-12);
+    near("sink rate of the drains", 0.0135663066149199 / DAY_S, 1e-12);
+    near("vertical time factor of the layer", 0.008 * 90.0 / 64.0, 1e-12);
+    near("degree of consolidation of the layer", walk.degree(), 1e-12);
+    near("degree of consolidation of the column", walk.degree(), 1e-12);
+    near("excess pore pressure at the depth", walk.excess_at(3.0), 1e-12);
+    for step in &trail.0 {
+        assert!(step.2.iter().all(|input| input.is_finite()), "{step:?}");
+    }
 }

@@ -157,18 +157,23 @@ impl Place {
 }
 
 /// Consolidating layers between free-draining ones or the ends of the column.
-struct Stack<'a> {
+pub(super) struct Stack<'a> {
     layers: &'a [ColumnLayer],
     /// Place of its first layer in the column.
     start: usize,
     drains_top: bool,
     drains_base: bool,
-    thickness_m: f64,
+    pub(super) thickness_m: f64,
 }
 
 impl<'a> Stack<'a> {
     /// The stack that the consolidating layer `index` belongs to.
-    fn of(layers: &'a [ColumnLayer], index: usize, top: Boundary, base: Boundary) -> Self {
+    pub(super) fn of(
+        layers: &'a [ColumnLayer],
+        index: usize,
+        top: Boundary,
+        base: Boundary,
+    ) -> Self {
         let (above, here) = layers.split_at(index);
         let start =
             above.iter().rposition(|layer| layer.drained).map_or(0, |seam| seam.saturating_add(1));
@@ -184,7 +189,13 @@ impl<'a> Stack<'a> {
         }
     }
 
-    const fn drained_ends(&self) -> f64 {
+    /// Whether it drains at all.
+    pub(super) const fn drains(&self) -> bool {
+        self.drains_top || self.drains_base
+    }
+
+    /// Drained ends, at least 1.
+    pub(super) const fn drained_ends(&self) -> f64 {
         if self.drains_top && self.drains_base { 2.0 } else { 1.0 }
     }
 

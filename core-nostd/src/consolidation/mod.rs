@@ -20,6 +20,7 @@ mod profile;
 mod state;
 pub mod stepper;
 pub mod terzaghi;
+mod working;
 
 pub use batch::{Answers, History};
 pub use drains::{DrainPattern, Drains};
@@ -32,3 +33,4 @@ pub(crate) use error::{
 pub use grid::{Boundary, ColumnLayer};
 pub use state::{Balance, State};
 pub use stepper::{Column, Factor, Loading, Stepper};
+pub use working::Seen;

@@ -23,6 +23,7 @@ mod surface;
 
 pub mod disc;
 pub mod layered;
+pub mod pore_pressure;
 pub mod rigid;
 pub mod ring;
 pub mod superposition;

@@ -3,7 +3,8 @@
 #![allow(dead_code, reason = "shared by several tests, each of which uses a part of it")]
 
 use brimstead_core::consolidation::{
-    Balance, Boundary, Column, ColumnLayer, Drains, Error, Factor, Loading, State, Stepper,
+    Balance, Boundary, Column, ColumnLayer, DrainPattern, Drains, Error, Factor, Loading, State,
+    Stepper,
 };
 
 pub const CELLS: usize = 60;
@@ -32,6 +33,72 @@ pub fn column<'a>(
     drains: Option<&'a Drains>,
 ) -> Column<'a> {
     Column { layers, top: Boundary::Drained, base, drains, water_unit_weight_kn_m3: 9.81 }
+}
+
+/// Load of `t02_staged.csv`, kPa by day.
+pub const STAGES: [(f64, f64); 12] = [
+    (0.0, 0.0),
+    (10.0, 40.0),
+    (40.0, 40.0),
+    (50.0, 80.0),
+    (90.0, 80.0),
+    (100.0, 120.0),
+    (150.0, 120.0),
+    (160.0, 160.0),
+    (220.0, 160.0),
+    (225.0, 100.0),
+    (260.0, 100.0),
+    (270.0, 180.0),
+];
+
+/// Pressures of the same table and their depths, m.
+pub const STAGED_DEPTHS: [(&str, f64); 4] =
+    [("u_Z0.25_kPa", 0.75), ("u_Z0.5_kPa", 1.5), ("u_Z0.75_kPa", 2.25), ("u_Z1_kPa", 3.0)];
+
+/// The layer of that table.
+pub fn staged_clay() -> ColumnLayer {
+    clay(3.0, 0.012, 0.012 * 0.0006 * 9.81)
+}
+
+/// Case B of `t03_layers.csv` with ch twice cv, as in `tests/oracle/consolidation_column.py`.
+pub fn partly_drained_layers() -> [ColumnLayer; 4] {
+    [(1.5, 0.03, 6e-5), (4.0, 0.006, 8e-6), (2.5, 0.05, 3e-4), (6.0, 0.01, 1.2e-5)].map(
+        |(thickness_m, cv, k)| ColumnLayer {
+            ch_m2_per_s: cv_per_day(2.0 * cv),
+            ..clay(thickness_m, cv, k)
+        },
+    )
+}
+
+/// The drains of `t04_combined.csv`, through the whole layer of 8 m.
+pub fn combined_drains() -> Drains {
+    Drains {
+        pattern: DrainPattern::Triangular,
+        spacing_m: 1.5,
+        equivalent_diameter_m: 0.0662,
+        smear_ratio: 2.0,
+        permeability_ratio_h_over_s: 3.0,
+        discharge_m3_per_s: None,
+        top_m: 0.0,
+        base_m: 8.0,
+        length_m: 8.0,
+    }
+}
+
+/// The layer of the same table.
+pub fn combined_clay() -> ColumnLayer {
+    ColumnLayer { ch_m2_per_s: cv_per_day(0.016), ..clay(8.0, 0.008, 8e-6) }
+}
+
+/// The drains of `tests/oracle/consolidation_column.py`.
+pub fn partial_drains() -> Drains {
+    Drains {
+        discharge_m3_per_s: Some(2e-7),
+        top_m: 0.5,
+        base_m: 9.3,
+        length_m: 8.8,
+        ..combined_drains()
+    }
 }
 
 /// Column, state, time and the load so far.

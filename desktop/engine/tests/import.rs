@@ -340,6 +340,19 @@ fn every_encoding_gives_the_same_readings() {
     }
 }
 
+#[test]
+fn the_report_can_be_sent_as_json() {
+    let imported = logger("2031-03-02 06:00:00,0.010,ERROR,1,101.2,27.1,8440\n");
+    let json = serde_json::to_value(&imported.report).unwrap();
+    assert_eq!(json["files"][0]["refused_by_reason"]["text"], 1);
+    assert_eq!(json["files"][0]["refused"][0]["reason"], "text");
+    assert_eq!(json["files"][0]["layout"]["named"], "Logger");
+    assert_eq!(json["files"][0]["encoding"], "utf-8");
+    let series = serde_json::to_value(&imported.series).unwrap();
+    assert_eq!(series[0]["of"]["instrument"], "LG1");
+    assert_eq!(series[0]["unit"], "m");
+}
+
 mod guessing {
     use super::*;
 

@@ -112,15 +112,22 @@ fn least(misfits: &[f64]) -> Option<usize> {
 fn misfits(points: &[&Sample], fill: &Fill) -> Option<Vec<f64>> {
     const WORST: f64 = 3.0;
     let windows = fill.rises.iter().filter_map(|rise| Window::new(points, rise));
-    let rises: Vec<(Vec<f64>, f64)> = windows.filter_map(|window| window.misfits(fill)).collect();
-    let mean = |of: &dyn Fn(&(Vec<f64>, f64)) -> f64| {
-        rises.iter().map(of).sum::<f64>() / rises.len() as f64
-    };
-    let follows = !rises.is_empty() && mean(&|(_, best)| *best) < UNEXPLAINED;
+    let rises: Vec<Shifts> = windows.filter_map(|window| window.shifts(fill)).collect();
+    let mean = |of: &dyn Fn(&Shifts) -> f64| rises.iter().map(of).sum::<f64>() / rises.len() as f64;
+    if rises.is_empty() || mean(&|rise| rise.best) >= UNEXPLAINED {
+        return None;
+    }
     let steps = 0..=2 * FURTHEST as usize;
-    follows.then(|| {
-        steps.map(|step| mean(&|(misfits, best)| (misfits[step] / best).min(WORST))).collect()
-    })
+    Some(steps.map(|step| mean(&|rise| (rise.misfits[step] / rise.best).min(WORST))).collect())
+}
+
+/// What the level leaves unexplained of one rise at each shift, as a share of what a line leaves;
+/// infinite where the level is not known.
+#[derive(Debug)]
+struct Shifts {
+    misfits: Vec<f64>,
+    /// The least of them.
+    best: f64,
 }
 
 /// The readings around one rise: time from its middle, h, and value.
@@ -155,15 +162,13 @@ impl Window {
         (kept.len() >= FEWEST && about_line > 0.0).then_some(Self { points: kept, about_line })
     }
 
-    /// What the level leaves unexplained at each shift, as a share of what a line leaves, with the
-    /// least of them; infinite where the level is not known, and `None` when that is so without
-    /// shift.
-    fn misfits(&self, fill: &Fill) -> Option<(Vec<f64>, f64)> {
+    /// All shifts; `None` when the level is not known without shift.
+    fn shifts(&self, fill: &Fill) -> Option<Shifts> {
         let shifts = -FURTHEST..=FURTHEST;
         let misfits: Vec<f64> =
             shifts.map(|lag| self.misfit(lag * STEP_S, fill).unwrap_or(f64::INFINITY)).collect();
         let best = misfits.iter().copied().fold(f64::INFINITY, f64::min);
-        misfits[FURTHEST as usize].is_finite().then_some((misfits, best))
+        misfits[FURTHEST as usize].is_finite().then_some(Shifts { misfits, best })
     }
 
     fn misfit(&self, lag_s: i64, fill: &Fill) -> Option<f64> {

@@ -6,14 +6,17 @@
 //! is reported and kept, so that it can still be checked against its neighbours; the document as a
 //! whole is refused when there is any problem.
 
+mod composite;
 pub(crate) mod declare;
 mod node;
 mod rules;
 
+pub(crate) use composite::{
+    ByChoice, ByName, Forms, List, Maybe, Nested, OrNull, Pair, Record, object_schema,
+};
 pub(crate) use declare::{choices, record, union};
 pub(crate) use node::{Node, ObjectReader, Reading, key_path, nearest};
 pub use rules::InstantText;
 pub(crate) use rules::{
-    ByChoice, ByName, Choice, Definitions, Flag, Forms, Instant, List, Maybe, Nested, Number,
-    OneOf, OrNull, Pair, Record, Rule, Text, Whole, object_schema, rule,
+    Choice, Definitions, Flag, Instant, Number, OneOf, Rule, Text, Whole, rule,
 };
