@@ -263,3 +263,47 @@ fn by_code(code: ErrorCode, detail: String, path: &Path) -> StoreError {
         _ => StoreError::Unreadable { path, detail },
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use rusqlite::ffi;
+
+    fn code(sqlite: std::ffi::c_int) -> &'static str {
+        let error = rusqlite::Error::SqliteFailure(ffi::Error::new(sqlite), None);
+        Fault::from(error).at(Path::new("heron.brim")).code()
+    }
+
+    #[test]
+    fn every_failure_of_the_database_has_its_code() {
+        for (sqlite, expected) in [
+            (ffi::SQLITE_FULL, "disk-full"),
+            (ffi::SQLITE_BUSY, "store-locked"),
+            (ffi::SQLITE_LOCKED, "store-locked"),
+            (ffi::SQLITE_READONLY, "no-access"),
+            (ffi::SQLITE_CANTOPEN, "no-access"),
+            (ffi::SQLITE_PERM, "no-access"),
+            (ffi::SQLITE_CORRUPT, "store-damaged"),
+            (ffi::SQLITE_NOTADB, "not-a-store"),
+            (ffi::SQLITE_IOERR, "disk-failing"),
+            (ffi::SQLITE_CONSTRAINT, "unreadable-entry"),
+        ] {
+            assert_eq!(code(sqlite), expected, "{sqlite}");
+        }
+    }
+
+    #[test]
+    fn a_message_says_what_happened_and_what_to_do() {
+        let path = PathBuf::from("heron.brim");
+        assert_eq!(
+            StoreError::Locked { path: path.clone() }.to_string(),
+            "heron.brim is held by another program. Nothing was stored; close the other one or try again."
+        );
+        let newest_backup = Some(PathBuf::from("heron.brim.2031-03-01T120000Z.schema-2.backup"));
+        let damaged = StoreError::Damaged { path, detail: "page 7".to_owned(), newest_backup };
+        assert_eq!(
+            damaged.to_string(),
+            "heron.brim is damaged (page 7). It was not changed. Copy it aside, then go on from its backup heron.brim.2031-03-01T120000Z.schema-2.backup and import the files since."
+        );
+    }
+}

@@ -270,6 +270,7 @@ impl<'c> Intake<'c> {
             |row| row.get(0),
         )?;
         let target = Target { channel, unit, newest_s };
+        let accepted_before = self.outcome.accepted;
         let mut hour: Option<HourSummary> = None;
         for reading in by_time(&series.readings).iter() {
             if let Some(reason) = why_refused(reading) {
@@ -287,6 +288,13 @@ impl<'c> Intake<'c> {
             }
         }
         self.add_hour(&target, hour)?;
+        let added = (self.outcome.accepted - accepted_before) as i64;
+        self.connection
+            .prepare_cached(
+                "INSERT INTO reading_count VALUES (?1, ?2)
+                 ON CONFLICT DO UPDATE SET readings = readings + excluded.readings",
+            )?
+            .execute((channel, added))?;
         for mark in series.not_read.iter().filter(|mark| is_instant(mark.time_s)) {
             let RawNotRead { time_s, reason, line } = *mark;
             let values = (channel, time_s, reason_word(reason), self.outcome.file, line);

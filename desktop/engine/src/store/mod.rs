@@ -15,7 +15,34 @@
 //! # Several programs
 //! Any number of programs may have a store open; one at a time writes, the others wait. What a
 //! call has reported as stored is on the disk. The file must lie on a disk of the same machine:
-//! the locks of shared network folders cannot be relied on.
+//! the locks of shared network folders cannot be relied on. While it is open the newest entries may
+//! stand in a second file beside it (its name with `-wal`), so copy it with
+//! [`SqliteStore::backup`].
+//!
+//! # From files to a comparison and back
+//! [`crate::import::read_bytes`] reads a file, [`keep`] stores what it gave, [`Store::imported`]
+//! gives the readings back as the import would have, and [`LimitSet::put_into`] the site with the
+//! limits that were agreed.
+//!
+//! ```
+//! use brimstead_engine::store::{Change, SqliteStore, Store, keep};
+//! use brimstead_engine::{import, site};
+//! # let folder = tempfile::tempdir()?;
+//! # let path = folder.path().join("heron.brim");
+//! # let json = include_str!("../../tests/fixtures/site.json");
+//! let change = Change { who: "Ines Vale", at_s: 1_930_132_800, why: "Morning round" };
+//! let mut store = SqliteStore::create(&path, json, &change)?;
+//! let bytes = b"Note\nNote\nTime,P5\n2031-03-02 06:00:00,45.2\n";
+//! let site = site::parse(json, "site file")?;
+//! let read = import::read_bytes(&site, &[("logger.csv", bytes)]);
+//! let outcome = keep(&mut store, &read, 0, bytes, &change)?;
+//! assert_eq!((outcome.accepted, outcome.duplicates), (1, 0));
+//! let limits = store.limits_at(change.at_s)?.expect("those of the site file");
+//! let site = limits.what.limits.put_into(&site);
+//! let imported = store.imported(&site, 0, i64::MAX)?;
+//! assert_eq!(imported.instrument("P5").expect("P5").points[0].value, 45.2);
+//! # Ok::<(), Box<dyn std::error::Error>>(())
+//! ```
 //!
 //! Instants are whole seconds of Unix time, UTC; no clock is read here.
 

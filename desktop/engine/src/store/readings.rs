@@ -264,17 +264,17 @@ pub(super) fn latest(
 }
 
 pub(super) fn channels(connection: &Connection) -> Result<Vec<ChannelState>, Fault> {
-    // Counted by hours, so that it does not take longer with every reading.
     let mut statement = connection.prepare_cached(
-        "SELECT (SELECT total(count) FROM reading_hour WHERE channel = ?1),
-                (SELECT min(time_s) FROM reading WHERE channel = ?1)",
+        "SELECT readings, (SELECT min(time_s) FROM reading WHERE channel = ?1)
+         FROM reading_count WHERE channel = ?1",
     )?;
     let mut states = Vec::new();
     for (number, channel) in all(connection)? {
         if let Some(latest) = latest(connection, &channel)? {
-            let (count, first_s): (f64, i64) =
+            let (count, first_s): (i64, i64) =
                 statement.query_row([number], |row| Ok((row.get(0)?, row.get(1)?)))?;
-            states.push(ChannelState { channel, readings: count as u64, first_s, latest });
+            let readings = count.unsigned_abs();
+            states.push(ChannelState { channel, readings, first_s, latest });
         }
     }
     Ok(states)

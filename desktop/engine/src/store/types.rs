@@ -3,8 +3,8 @@
 use super::error::StoreError;
 use serde::Serialize;
 
-/// Longest name of a person or thing, characters.
-pub(super) const LONGEST_NAME: usize = 200;
+/// Longest name of a person, thing or file, characters.
+pub(super) const LONGEST_NAME: usize = 255;
 /// Longest free text, characters.
 pub(super) const LONGEST_TEXT: usize = 20_000;
 /// First and last instant taken: a year after a clock set back to nothing, and the year 2200.

@@ -49,7 +49,7 @@ pub(super) fn withdraw(
              GROUP BY c.channel, c.time_s)",
         [file],
     )? as u64;
-    sum_hours_again(connection, file)?;
+    sum_again(connection, file)?;
     let times_s = connection.query_row(
         "SELECT min(time_s), max(time_s) FROM withdrawn_reading WHERE file = ?1",
         [file],
@@ -84,8 +84,8 @@ fn refuse_unless_it_counts(connection: &Connection, file: i64) -> Result<(), Fau
     }
 }
 
-/// Works out the hours that had readings of the file from what counts now.
-fn sum_hours_again(connection: &Connection, file: i64) -> Result<(), Fault> {
+/// Works out the hours and counts that had readings of the file from what counts now.
+fn sum_again(connection: &Connection, file: i64) -> Result<(), Fault> {
     connection.execute_batch("CREATE TEMP TABLE hour_touched (channel INTEGER, hour INTEGER)")?;
     connection.execute(
         &format!(
@@ -104,6 +104,10 @@ fn sum_hours_again(connection: &Connection, file: i64) -> Result<(), Fault> {
              AND r.time_s BETWEEN hour * {HOUR_S} AND hour * {HOUR_S} + {HOUR_S} - 1
          WHERE true
          ON CONFLICT DO UPDATE SET {ADD_TO_HOUR};
+         UPDATE reading_count SET readings = (
+             SELECT coalesce(sum(count), 0) FROM reading_hour AS h
+             WHERE h.channel = reading_count.channel
+         ) WHERE channel IN (SELECT channel FROM hour_touched);
          DROP TABLE hour_touched;",
         ADD_TO_HOUR = super::import::ADD_TO_HOUR,
     ))?;

@@ -1,10 +1,11 @@
 //! From text through the store and back: a comparison sees the same either way.
 
 use crate::support::{Bench, NOON_S, SITE, bench, now, refused};
-use brimstead_engine::import::{Imported, NoValue, Series, SeriesOf, read_bytes};
+use brimstead_engine::import::{Imported, NoValue, Series, SeriesOf, read_bytes, read_files};
 use brimstead_engine::site::{self, Limit, LimitDefaults, SiteFile};
 use brimstead_engine::store::{Channel, ImportOutcome, LimitSet, SqliteStore, Store, keep};
 use brimstead_engine::units::UnitName;
+use std::path::Path;
 
 fn site() -> SiteFile {
     site::parse(SITE, "site.json").expect("the fixture is good")
@@ -183,4 +184,35 @@ fn limits_put_into_a_site_are_those_it_then_has() {
     let mut read_back = LimitSet::of_site(&with);
     read_back.instruments.retain(|_, of_one| !of_one.limits.is_empty());
     assert_eq!(read_back, limits);
+}
+
+/// The demo's files one by one into a store, newest first as after an outage, and all of them read
+/// at once: the same series.
+#[test]
+fn whole_runs_of_the_demo_come_back_as_the_files_give_them() {
+    let demo = Path::new(env!("CARGO_MANIFEST_DIR")).join("../../data-demo");
+    let json = std::fs::read_to_string(demo.join("site.json")).expect("the demo site");
+    let site = site::parse(&json, "site.json").expect("the demo site is good");
+    for run in ["run-good", "run-bad"] {
+        let folder = tempfile::tempdir().expect("folder");
+        let path = folder.path().join("demo.brim");
+        let mut store = SqliteStore::create(&path, &json, &now()).expect("store");
+        let files = std::fs::read_dir(demo.join(run)).expect("the run");
+        let mut files: Vec<_> = files.map(|file| file.expect("file").path()).collect();
+        files.sort();
+        for file in files.iter().rev() {
+            let bytes = std::fs::read(file).expect("read");
+            let name = file.file_name().expect("name").to_string_lossy();
+            let imported = read_bytes(&site, &[(&name, &bytes)]);
+            let outcome = keep(&mut store, &imported, 0, &bytes, &now()).expect("kept");
+            assert!(outcome.accepted > 0 && outcome.refused.is_empty(), "{name}: {outcome:?}");
+        }
+        let mut direct = read_files(&site, &files).expect("files");
+        let mut stored = all(&store, &site);
+        for imported in [&mut direct, &mut stored] {
+            imported.series.sort_by(|a, b| a.of.cmp(&b.of));
+        }
+        assert!(!direct.series.is_empty());
+        assert_eq!(without_sources(&stored.series), without_sources(&direct.series), "{run}");
+    }
 }

@@ -1,5 +1,6 @@
 -- Schema 2: the readings of each hour in one row, so that many years are drawn without reading
--- every value and without losing a peak. Worked out from `reading`; it could be built again.
+-- every value and without losing a peak, and how many there are. Both are worked out from
+-- `reading` and could be built again.
 CREATE TABLE reading_hour (
     channel INTEGER NOT NULL REFERENCES channel (id),
     hour INTEGER NOT NULL,
@@ -11,6 +12,13 @@ CREATE TABLE reading_hour (
     highest_s INTEGER NOT NULL,
     PRIMARY KEY (channel, hour, unit)
 ) STRICT, WITHOUT ROWID;
+
+CREATE TABLE reading_count (
+    channel INTEGER PRIMARY KEY REFERENCES channel (id),
+    readings INTEGER NOT NULL
+) STRICT;
+
+INSERT INTO reading_count SELECT channel, count(*) FROM reading GROUP BY channel;
 
 -- With min() or max() alone, the other columns come from the row that holds it.
 INSERT INTO reading_hour (channel, hour, unit, count, lowest, lowest_s, highest, highest_s)
