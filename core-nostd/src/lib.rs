@@ -8,8 +8,8 @@
 //!
 //! A room may use the rooms above it in this list and none below:
 //! `config`, `units`, `quantity`, `working`, `math`, `instrument` (whose kinds the expectation
-//! must know), `ground`, `load`, `stress`, `consolidation`, `settlement`, `expectation`,
-//! `comparison`, `watch`.
+//! must know), `ground`, `load`, `stress`, `consolidation`, `settlement`, `stability`, `expectation`,
+//! `comparison`, `watch`, `shell`, `forecast`.
 //!
 //! # Units and signs
 //! SI and its plain multiples, written in the name of every number: `thickness_m`, `pressure_kpa`,
@@ -40,6 +40,8 @@ pub mod load;
 pub mod math;
 pub mod quantity;
 pub mod settlement;
+pub mod shell;
+pub mod stability;
 pub mod stress;
 pub mod units;
 pub mod watch;
