@@ -34,6 +34,7 @@ pub mod comparison;
 pub mod config;
 pub mod consolidation;
 pub mod expectation;
+pub mod forecast;
 pub mod ground;
 pub mod instrument;
 pub mod load;
