@@ -48,6 +48,18 @@ pub fn check_format(format: &str) -> Result<(), String> {
     if read_back == sample { Ok(()) } else { Err(format!("It turns {sample} into {read_back}.")) }
 }
 
+/// An instant that a person typed: RFC 3339, or civil time in a zone, when it stands for exactly
+/// one instant there.
+#[must_use]
+pub fn instant(text: &str, zone: &TimeZone) -> Option<i64> {
+    if let Ok(instant) = text.parse::<Timestamp>() {
+        return Some(instant.as_second());
+    }
+    let civil: civil::DateTime = text.trim().replace(' ', "T").parse().ok()?;
+    let stands_for = zone.to_ambiguous_zoned_datetime(civil);
+    stands_for.unambiguous().ok().map(|zoned| zoned.timestamp().as_second())
+}
+
 /// An instant in a zone, to the minute, with its offset: for messages.
 #[must_use]
 pub fn shown(time_s: i64, zone: &TimeZone) -> String {

@@ -12,7 +12,11 @@ mod trail;
 use request::{Refusal, Request};
 use serde_json::Value;
 use serde_json::value::RawValue;
-use std::io::{self, BufRead, Write};
+use anyhow::Context;
+use std::fs::File;
+use std::io::{self, BufRead, BufReader, Write};
+use std::path::Path;
+use std::process::ExitCode;
 use trail::Trail;
 
 /// How a batch ended.
@@ -108,4 +112,25 @@ fn dispatch(quantity: &str, input: &RawValue, trail: &mut Trail) -> Result<Value
             ))
         }
     }
+}
+
+/// Answers the requests of a file, or of standard input for `-`.
+///
+/// # Errors
+/// When the input cannot be opened or read to its end.
+pub fn run_file(file: &Path) -> anyhow::Result<ExitCode> {
+    let output = io::BufWriter::new(io::stdout().lock());
+    let outcome = if file == Path::new("-") {
+        run(io::stdin().lock(), output).context("standard input could not be read")?
+    } else {
+        let input = File::open(file).with_context(|| {
+            format!("{} could not be opened. Check the path and its permissions", file.display())
+        })?;
+        run(BufReader::new(input), output)
+            .with_context(|| format!("{} could not be read to its end", file.display()))?
+    };
+    Ok(match outcome {
+        Outcome::AllGood => ExitCode::SUCCESS,
+        Outcome::SomeRefused => ExitCode::from(1),
+    })
 }

@@ -170,6 +170,7 @@ pub fn page(charts: &[&Chart]) -> Result<ReportPage, ChartError> {
             data_state: "not read".to_owned(),
             evidence: "No value in 14 scans; its neighbours on the same logger answer.".to_owned(),
             since_s: Some(MOMENT_S - 400_000),
+            until_s: None,
             next_step: "Check the cable at the junction box.".to_owned(),
         }],
         charts: charts.iter().map(section).collect::<Result<_, ChartError>>()?,

@@ -7,11 +7,16 @@
 //! by scan: the same checks and the same state machines of the core. Values are in the core's
 //! units (kPa, m) from here to the edge, where each instrument's own unit is shown.
 
+pub mod charts;
 mod judge;
 mod level;
 mod limits;
+pub mod page;
+pub mod record;
 mod reduce;
+pub mod story;
 mod timeline;
+pub mod words;
 
 pub use level::{LoadInUse, LoadLine};
 pub use limits::{LimitsError, limits_of};

@@ -135,6 +135,8 @@ pub struct FaultRow {
     pub evidence: String,
     /// Since when, seconds of Unix time.
     pub since_s: Option<i64>,
+    /// When it was good again; none while it goes on.
+    pub until_s: Option<i64>,
     /// What to look at first.
     pub next_step: String,
 }
@@ -194,12 +196,18 @@ impl ReportPage {
             0 => "No instrument judged".to_owned(),
             _ => format!("{} of {} instruments", parts.join(", "), self.instruments.len()),
         };
-        let faults = match self.faults.len() {
+        let over = self.faults.iter().filter(|fault| fault.until_s.is_some()).count();
+        let faults = match self.faults.len() - over {
             0 => "no equipment fault known".to_owned(),
             1 => "1 equipment fault".to_owned(),
             count => format!("{count} equipment faults"),
         };
-        format!("{ground}; {faults}.")
+        let over = match over {
+            0 => String::new(),
+            1 => ", 1 more that is over".to_owned(),
+            count => format!(", {count} more that are over"),
+        };
+        format!("{ground}; {faults}{over}.")
     }
 
     /// The load that most readings were made under; rows under another load say so.
@@ -215,7 +223,7 @@ impl ReportPage {
         let unjudged = |row: &InstrumentRow| matches!(row.mark, Mark::NotJudged | Mark::Fault);
         self.instruments.is_empty()
             || self.instruments.iter().any(unjudged)
-            || !self.faults.is_empty()
+            || self.faults.iter().any(|fault| fault.until_s.is_none())
     }
 
     /// As JSON, with the cautions.

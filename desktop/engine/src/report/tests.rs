@@ -86,6 +86,7 @@ pub(crate) fn page() -> ReportPage {
             data_state: "not read".to_owned(),
             evidence: "No value in 14 scans; its neighbours on the same logger answer.".to_owned(),
             since_s: Some(1_779_139_400),
+            until_s: None,
             next_step: "Check the cable at the junction box.".to_owned(),
         }],
         charts: vec![],
