@@ -2,10 +2,10 @@
 
 use crate::REFUSED;
 use crate::arguments::CheckArguments;
+use brimstead_core::watch::Watcher;
 use brimstead_engine::compare::limits_of;
 use brimstead_engine::expect::Model;
 use brimstead_engine::site;
-use brimstead_core::watch::Watcher;
 use serde_json::json;
 use std::process::ExitCode;
 
@@ -14,7 +14,10 @@ pub fn run(given: &CheckArguments) -> anyhow::Result<ExitCode> {
         Ok(site) => site,
         Err(problems) => {
             if given.json {
-                println!("{}", json!({"problems": problems.to_string().lines().collect::<Vec<_>>()}));
+                println!(
+                    "{}",
+                    json!({"problems": problems.to_string().lines().collect::<Vec<_>>()})
+                );
             } else {
                 println!("{problems}");
             }

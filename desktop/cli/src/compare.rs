@@ -51,7 +51,8 @@ fn changes(comparison: &Comparison, zone: &jiff::tz::TimeZone) {
     let mut lines: Vec<(i64, String)> = Vec::new();
     for timeline in &comparison.timelines {
         for change in &timeline.changes {
-            let doubt = if change.to > change.from && !change.confirmed { ", unconfirmed" } else { "" };
+            let doubt =
+                if change.to > change.from && !change.confirmed { ", unconfirmed" } else { "" };
             lines.push((
                 change.time_s,
                 format!(

@@ -17,13 +17,19 @@ const PNG_SCALE: f32 = 2.0;
 pub fn terminal() -> TerminalOptions {
     let is_terminal = io::stdout().is_terminal();
     let width = std::env::var("COLUMNS").ok().and_then(|columns| columns.parse().ok());
-    TerminalOptions { width: if is_terminal { width } else { None }, colour: colour_wanted(is_terminal) }
+    TerminalOptions {
+        width: if is_terminal { width } else { None },
+        colour: colour_wanted(is_terminal),
+    }
 }
 
 /// Makes a folder.
 pub fn folder(path: &Path) -> anyhow::Result<()> {
     std::fs::create_dir_all(path).with_context(|| {
-        format!("the folder {} could not be made. Check the path and its permissions", path.display())
+        format!(
+            "the folder {} could not be made. Check the path and its permissions",
+            path.display()
+        )
     })
 }
 

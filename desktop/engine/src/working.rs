@@ -127,19 +127,17 @@ impl Sheet {
     /// As a page of a calculation book.
     #[must_use]
     pub fn to_text(&self) -> String {
-        let mut text = format!("{}\nExpected reading of the best estimate, step by step; unit weight of water {WATER_UNIT_WEIGHT_KN_M3} kN/m3 unless the site says otherwise.\n", self.title);
+        let mut text = format!(
+            "{}\nExpected reading of the best estimate, step by step; unit weight of water {WATER_UNIT_WEIGHT_KN_M3} kN/m3 unless the site says otherwise.\n",
+            self.title
+        );
         for (place, line) in self.lines.iter().enumerate() {
             let inputs: Vec<String> = line
                 .inputs
                 .iter()
                 .map(|(symbol, value)| format!("{symbol} = {}", number(*value)))
                 .collect();
-            text += &format!(
-                "\n{:3}. {}\n     {}\n",
-                place + 1,
-                line.name,
-                line.formula
-            );
+            text += &format!("\n{:3}. {}\n     {}\n", place + 1, line.name, line.formula);
             if !inputs.is_empty() {
                 text += &format!("     with {}\n", inputs.join(", "));
             }

@@ -9,10 +9,10 @@ mod settlement;
 mod stress;
 mod trail;
 
+use anyhow::Context;
 use request::{Refusal, Request};
 use serde_json::Value;
 use serde_json::value::RawValue;
-use anyhow::Context;
 use std::fs::File;
 use std::io::{self, BufRead, BufReader, Write};
 use std::path::Path;

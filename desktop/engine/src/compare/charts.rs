@@ -147,7 +147,8 @@ pub fn against_pressure(timeline: &Timeline) -> PressureChart {
         good: row.data_state == DataState::Good,
     });
     let limits = timeline.limit_curves().into_iter().filter_map(|curve| {
-        let points = curve.points.iter().filter_map(|(_, load, value)| Some(((*load)?, value * scale)));
+        let points =
+            curve.points.iter().filter_map(|(_, load, value)| Some(((*load)?, value * scale)));
         Some(chart::Limit { kind: limit_kind(curve.trigger)?, points: points.collect() })
     });
     PressureChart {

@@ -198,10 +198,7 @@ fn kind_of(trigger: Trigger) -> Option<LimitKind> {
 }
 
 /// The limits at the load of a row that are in the unit of the reading, above before below.
-fn limits_now(
-    timeline: &Timeline,
-    row: &Row,
-) -> Vec<brimstead_core::watch::LimitsNow> {
+fn limits_now(timeline: &Timeline, row: &Row) -> Vec<brimstead_core::watch::LimitsNow> {
     let Some(watcher) = &timeline.watcher else { return Vec::new() };
     let rules = watcher.limits().rules.as_slice().iter().enumerate();
     rules
@@ -264,7 +261,9 @@ fn fault_rows(site: &SiteFile, comparison: &Comparison, import: &ImportReport) -
             let told = import
                 .suspicions
                 .iter()
-                .find(|suspicion| suspicion.instruments.contains(&timeline.id) && fault.to_s.is_none())
+                .find(|suspicion| {
+                    suspicion.instruments.contains(&timeline.id) && fault.to_s.is_none()
+                })
                 .map(|suspicion| suspicion.message.clone());
             let until = fault.to_s.map_or("It goes on.".to_owned(), |to_s| {
                 format!("Good again {}.", crate::chart::stamp(to_s, &zone))
@@ -278,7 +277,10 @@ fn fault_rows(site: &SiteFile, comparison: &Comparison, import: &ImportReport) -
                     kind: kind_word(timeline.kind).to_owned(),
                     place: place_words(site, given),
                     data_state: fault.state.name().to_owned(),
-                    evidence: format!("{evidence}{}{until}", told.map_or(String::new(), |told| format!("{told} "))),
+                    evidence: format!(
+                        "{evidence}{}{until}",
+                        told.map_or(String::new(), |told| format!("{told} "))
+                    ),
                     since_s: Some(fault.from_s),
                     until_s: fault.to_s,
                     next_step: next_step(fault.state).to_owned(),
@@ -296,7 +298,9 @@ pub fn next_step(state: DataState) -> &'static str {
     match state {
         DataState::Good => "",
         DataState::Suspect => "Read again by hand, and compare with its neighbours.",
-        DataState::Stale | DataState::NotRead => "Check logger power, cable and link; read by hand.",
+        DataState::Stale | DataState::NotRead => {
+            "Check logger power, cable and link; read by hand."
+        }
         DataState::Frozen => "Check the instrument by hand; for a level gauge dip the tank.",
         DataState::OutOfRange => "Check rods, re-zero and unit before anything else.",
         DataState::Failed => "Check cable and sensor; read by hand.",

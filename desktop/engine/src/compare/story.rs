@@ -1,7 +1,7 @@
 //! The sentences of a comparison, written by rules from facts: what happened, against which load,
 //! who agrees, who is silent, what the site's plan says.
 
-use super::words::{joined, kind_word, plan_words, unit_word, decimals};
+use super::words::{decimals, joined, kind_word, plan_words, unit_word};
 use super::{Comparison, Row, Timeline};
 use crate::chart::stamp;
 use crate::site::SiteFile;
@@ -57,7 +57,8 @@ fn raised_line(trigger: Trigger, at: &[&Timeline], zone: &TimeZone, time_s: i64)
     let ids: Vec<&str> = at.iter().map(|one| one.id.as_str()).collect();
     let Some(first) = at.first() else { return String::new() };
     let since = first.changes.iter().rev().find(|change| change.time_s <= time_s);
-    let since = since.map_or(String::new(), |change| format!(" since {}", stamp(change.time_s, zone)));
+    let since =
+        since.map_or(String::new(), |change| format!(" since {}", stamp(change.time_s, zone)));
     let evidence = first.value_at(time_s).map_or(String::new(), |row| evidence(first, row));
     format!("{trigger} at {}; {}{since}{evidence}", joined(&ids), first.id)
 }
