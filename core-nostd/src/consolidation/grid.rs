@@ -174,11 +174,10 @@ impl<'a> Stack<'a> {
         top: Boundary,
         base: Boundary,
     ) -> Self {
-        let (above, here) = layers.split_at(index);
-        let start =
-            above.iter().rposition(|layer| layer.drained).map_or(0, |seam| seam.saturating_add(1));
-        let length = here.iter().position(|layer| layer.drained).unwrap_or(here.len());
-        let end = index.saturating_add(length);
+        let mut above = layers.iter().take(index);
+        let start = above.rposition(|layer| layer.drained).map_or(0, |seam| seam.saturating_add(1));
+        let mut below = layers.iter().enumerate().skip(index);
+        let end = below.find(|(_, layer)| layer.drained).map_or(layers.len(), |seam| seam.0);
         let own = layers.get(start..end).unwrap_or(&[]);
         Self {
             layers: own,

@@ -84,7 +84,11 @@ impl<const CELLS: usize> Column<CELLS> {
     pub fn new(model: &SiteModel, place: PlanPosition) -> Result<Self, ExpectationError> {
         let ground = &model.ground;
         let profile = Profile::new(ground)?;
-        let flow: Vec<ColumnLayer, MAX_LAYERS> = ground.layers.iter().map(Into::into).collect();
+        let mut flow: Vec<ColumnLayer, MAX_LAYERS> = Vec::new();
+        for layer in &ground.layers {
+            // As many as the ground can have.
+            let _ = flow.push(layer.into());
+        }
         let stepper = Stepper::new(&consolidation::Column {
             layers: &flow,
             top: Boundary::Drained,
@@ -338,19 +342,19 @@ fn lay_cells<const CELLS: usize>(
     profile: &Profile<'_>,
     stepper: &Stepper<CELLS>,
 ) -> Vec<Cell, CELLS> {
-    let tops = stepper.face_depths_m();
+    let mut cells = Vec::new();
+    let tops = stepper.face_depths_m().zip(stepper.centre_depths_m());
     let sizes = stepper.thicknesses_m().zip(stepper.layers());
-    tops.zip(stepper.centre_depths_m())
-        .zip(sizes)
-        .filter_map(|((top_m, centre_m), (thickness_m, layer))| {
-            let at = profile.layers().get(layer)?;
-            Some(Cell {
-                layer,
-                top_m,
-                thickness_m,
-                law: StressStrain::in_layer(profile, at, centre_m),
-                pore_pressure_response: at.layer.pore_pressure_response,
-            })
-        })
-        .collect()
+    for ((top_m, centre_m), (thickness_m, layer)) in tops.zip(sizes) {
+        let Some(at) = profile.layers().get(layer) else { continue };
+        // As many as the stepper has.
+        let _ = cells.push(Cell {
+            layer,
+            top_m,
+            thickness_m,
+            law: StressStrain::in_layer(profile, at, centre_m),
+            pore_pressure_response: at.layer.pore_pressure_response,
+        });
+    }
+    cells
 }

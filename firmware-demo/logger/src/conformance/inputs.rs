@@ -2,6 +2,7 @@
 
 use brimstead_core::config::Name;
 use brimstead_core::consolidation::{DrainPattern, Drains};
+use brimstead_core::expectation::{DrainZone, SiteModel};
 use brimstead_core::ground::{
     BaseDrainage, BaseStiffness, Compressibility, Ground, GroundWater, Layer, Preconsolidation,
 };
@@ -11,10 +12,7 @@ use brimstead_core::load::{PlanPosition, Tank};
 /// What the numbers are computed from.
 #[derive(Debug, Clone)]
 pub struct Inputs {
-    pub(super) tank: Tank,
-    pub(super) neighbour: PlanPosition,
-    pub(super) ground: Ground,
-    pub(super) drains: Drains,
+    pub(super) site: SiteModel,
     pub(super) gauge: WireCalibration,
 }
 
@@ -22,14 +20,10 @@ impl Inputs {
     /// The invented tank on its invented ground. `None` only when they outgrow the core's
     /// capacities.
     #[must_use]
+    // Its copies must not stay on the stack while the numbers are computed.
+    #[inline(never)]
     pub fn invented() -> Option<Self> {
-        Some(Self {
-            tank: tank()?,
-            neighbour: PlanPosition { x_m: 61.3, y_m: -22.9 },
-            ground: ground()?,
-            drains: DRAINS,
-            gauge: GAUGE,
-        })
+        Some(Self { site: site()?, gauge: GAUGE })
     }
 }
 
@@ -54,6 +48,18 @@ const GAUGE: WireCalibration = WireCalibration {
     apply_temperature: true,
     apply_barometer: true,
 };
+
+fn site() -> Option<SiteModel> {
+    let tank = tank()?;
+    let neighbour =
+        Tank { axis: PlanPosition { x_m: 61.3, y_m: -22.9 }, diameter_m: 31.0, ..tank.clone() };
+    let drains = DrainZone { drains: DRAINS, axis: tank.axis, radius_m: 30.0 };
+    let mut site = SiteModel { ground: ground()?, drains: Some(drains), tanks: Default::default() };
+    for tank in [tank, neighbour] {
+        site.tanks.push(tank).ok()?;
+    }
+    Some(site)
+}
 
 fn tank() -> Option<Tank> {
     Some(Tank {

@@ -8,9 +8,12 @@ mod inputs;
 pub use inputs::Inputs;
 
 use brimstead_core::config::COLUMN_CELLS;
-use brimstead_core::consolidation::{Boundary, Column, ColumnLayer, Factor, Loading, Stepper};
+use brimstead_core::consolidation::{self, Boundary, ColumnLayer, Factor, Loading, Stepper};
+use brimstead_core::expectation::{Column, LiquidPressures, Moment, Point, Sensor, SiteModel};
 use brimstead_core::ground::Profile;
+use brimstead_core::instrument::Kind;
 use brimstead_core::instrument::reduce::{VibratingWire, WireInput};
+use brimstead_core::load::PlanPosition;
 use brimstead_core::settlement::immediate::immediate_settlement;
 use brimstead_core::settlement::primary::primary_settlement;
 use brimstead_core::stress::{Disc, Ring};
@@ -31,15 +34,19 @@ const STEPS_S: [f64; 3] = [600.0, 3600.0, 2.6e6];
 /// Depths at which the gauges sit, m.
 const GAUGE_DEPTHS_M: [f64; 3] = [2.5, 7.7, 12.1];
 
+const DAY_S: i64 = 86_400;
+const YEAR_S: i64 = 365 * DAY_S;
+
 /// Any Young's modulus, kPa: it is divided out again.
 const YOUNG_KPA: f64 = 1000.0;
 
 /// Computes every number and hands it on with its name; `None` when the core refuses an input.
 pub fn compute(inputs: &Inputs, mut each: impl FnMut(&'static str, f64)) -> Option<()> {
-    let Inputs { tank, neighbour, ground, .. } = inputs;
+    let ground = &inputs.site.ground;
+    let [tank, neighbour] = inputs.site.tanks.as_slice() else { return None };
     let profile = Profile::new(ground).ok()?;
     each("tank area m2", tank.area_m2());
-    each("axis distance m", tank.axis.distance_to_m(neighbour));
+    each("axis distance m", tank.axis.distance_to_m(&neighbour.axis));
     for level_m in LIQUID_LEVELS_M {
         let pressure_kpa =
             tank.applied_pressure_kpa(level_m, ground.water_unit_weight_kn_m3, &mut Silent).ok()?;
@@ -54,9 +61,13 @@ pub fn compute(inputs: &Inputs, mut each: impl FnMut(&'static str, f64)) -> Opti
         }
     }
     pore_pressures(inputs, &mut each)?;
-    gauge_pressures(inputs, &mut each)
+    gauge_pressures(inputs, &mut each)?;
+    expected_readings(&inputs.site, &mut each)
 }
 
+// These parts stay functions of their own: joined, they would all hold their stack at once.
+
+#[inline(never)]
 fn stresses(
     disc: &Disc,
     ring: &Ring,
@@ -75,6 +86,7 @@ fn stresses(
     Some(())
 }
 
+#[inline(never)]
 fn settlements(
     profile: &Profile<'_>,
     disc: &Disc,
@@ -97,15 +109,16 @@ fn settlements(
 }
 
 /// The column after a sudden fill, over short steps and long ones.
+#[inline(never)]
 fn pore_pressures(inputs: &Inputs, each: &mut impl FnMut(&'static str, f64)) -> Option<()> {
-    let [crust, clay, sand] = inputs.ground.layers.as_slice() else { return None };
+    let [crust, clay, sand] = inputs.site.ground.layers.as_slice() else { return None };
     let layers = [crust, clay, sand].map(ColumnLayer::from);
-    let stepper = Stepper::<COLUMN_CELLS>::new(&Column {
+    let stepper = Stepper::<COLUMN_CELLS>::new(&consolidation::Column {
         layers: &layers,
         top: Boundary::Drained,
         base: Boundary::Closed,
-        drains: Some(&inputs.drains),
-        water_unit_weight_kn_m3: inputs.ground.water_unit_weight_kn_m3,
+        drains: Some(&inputs.site.drains.as_ref()?.drains),
+        water_unit_weight_kn_m3: inputs.site.ground.water_unit_weight_kn_m3,
     })
     .ok()?;
     let mut state = stepper.at_rest();
@@ -125,11 +138,43 @@ fn pore_pressures(inputs: &Inputs, each: &mut impl FnMut(&'static str, f64)) -> 
     Some(())
 }
 
+#[inline(never)]
 fn gauge_pressures(inputs: &Inputs, each: &mut impl FnMut(&'static str, f64)) -> Option<()> {
     let gauge = VibratingWire::new(&inputs.gauge).ok()?;
     for digits in [8932.1, 7741.9, 6120.3] {
         let input = WireInput { digits, temperature_c: Some(12.7), barometer_kpa: Some(99.8) };
         each("gauge pressure kPa", gauge.pressure(&input).ok()?.pressure_kpa);
+    }
+    Some(())
+}
+
+/// What a piezometer and a settlement plate should read while the tank fills.
+#[inline(never)]
+fn expected_readings(site: &SiteModel, each: &mut impl FnMut(&'static str, f64)) -> Option<()> {
+    let place = PlanPosition { x_m: 9.3, y_m: -4.1 };
+    let sensor = |kind, depth_m| Sensor { kind, place, depth_m, tip_sinks: true };
+    // Borrowed where it was made: a column is large, and moving it would need room for two.
+    let column = Column::<COLUMN_CELLS>::new(site, place);
+    let column = column.as_ref().ok()?;
+    let piezometer = Point::new(site, sensor(Kind::Piezometer, 7.7)).ok()?;
+    let plate = Point::new(site, sensor(Kind::SettlementPlate, 0.3)).ok()?;
+
+    let mut liquid_kpa = LiquidPressures::default();
+    let mut state = column.start(0, &liquid_kpa).ok()?;
+    let mut factor = Factor::empty();
+    column.advance(&mut state, YEAR_S, &liquid_kpa, &mut factor).ok()?;
+    let zeros = [piezometer.zero(column, &state), plate.zero(column, &state)];
+    let mut time_s = YEAR_S;
+    for level_m in LIQUID_LEVELS_M {
+        time_s += DAY_S;
+        let tank = site.tanks.first()?;
+        *liquid_kpa.first_mut()? =
+            tank.liquid_pressure_kpa(level_m, site.ground.water_unit_weight_kn_m3).ok()?;
+        column.advance(&mut state, time_s, &liquid_kpa, &mut factor).ok()?;
+        let moment = Moment { liquid_level_m: level_m, background_kpa: 0.7 };
+        for (point, zero) in [&piezometer, &plate].into_iter().zip(zeros) {
+            each("expected reading", point.reading(column, &state, zero, &moment).ok()?);
+        }
     }
     Some(())
 }
@@ -163,7 +208,9 @@ mod tests {
             let value = f64::from_bits(u64::from_str_radix(bits, 16).unwrap());
             assert!(!name.is_empty() && value.is_finite(), "{line}");
         }
-        for room in ["applied", "disc", "ring", "primary", "immediate", "excess", "gauge"] {
+        for room in
+            ["applied", "disc", "ring", "primary", "immediate", "excess", "gauge", "expected"]
+        {
             assert!(text.contains(room), "nothing of {room} is compared");
         }
     }
@@ -171,7 +218,7 @@ mod tests {
     #[test]
     fn a_refused_input_is_an_error_and_not_a_shorter_list() {
         let mut inputs = Inputs::invented().unwrap();
-        inputs.tank.shell_height_m = 5.0;
+        inputs.site.tanks[0].shell_height_m = 5.0;
         assert_eq!(compute(&inputs, |_, _| {}), None);
     }
 }
