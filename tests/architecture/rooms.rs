@@ -20,9 +20,10 @@ const FORMULA_ROOMS: [&str; 5] = ["stress", "consolidation", "settlement", "stab
 const MAY_HAVE_NAMESAKES: [&str; 3] =
     ["core-nostd/", "data-demo/generator/", "desktop/cli/src/eval/"];
 
-/// Powers and logarithms that are no formula of the ground: axes and colours of drawings, sampling
-/// of an uncertain ground, statistics by which an import doubts its readings.
-const MAY_USE_CURVES: [&str; 4] = [
+/// Powers and logarithms that are no formula of the ground: axes and colours of drawings, the
+/// decimals of a printed value, sampling of an uncertain ground, statistics by which an import doubts its readings.
+const MAY_USE_CURVES: [&str; 5] = [
+    "desktop/engine/src/report/values.rs",
     "desktop/engine/src/chart/",
     "desktop/engine/src/series/",
     "desktop/engine/src/ensemble",
