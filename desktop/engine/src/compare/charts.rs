@@ -128,12 +128,36 @@ pub fn against_time(
     }
 }
 
-/// One instrument against the applied pressure.
+/// Step of applied pressure between points of a curve over it, kPa.
+const PRESSURE_STEP_KPA: f64 = 0.5;
+
+/// Places in a list of pressures at which the load is higher than ever before: a curve over them
+/// has one value for each pressure, that of the first loading, and shows the limits of a rise.
+fn first_loading(pressures: impl Iterator<Item = Option<f64>>) -> Vec<usize> {
+    let mut reached_kpa = f64::NEG_INFINITY;
+    let mut places = Vec::new();
+    for (place, pressure) in pressures.enumerate() {
+        if let Some(pressure) = pressure
+            && pressure >= reached_kpa + PRESSURE_STEP_KPA
+        {
+            reached_kpa = pressure;
+            places.push(place);
+        }
+    }
+    places
+}
+
+/// One instrument against the applied pressure: all readings, expected band and limits of the
+/// first loading.
 #[must_use]
 pub fn against_pressure(timeline: &Timeline) -> PressureChart {
     let scale = timeline.scale();
     let loaded = || timeline.rows.iter().filter_map(|row| Some((row, row.applied_pressure_kpa?)));
-    let expected = loaded().filter_map(|(row, x)| {
+    let first: Vec<(&Row, f64)> = {
+        let rows: Vec<(&Row, f64)> = loaded().filter(|(row, _)| row.expected.is_some()).collect();
+        first_loading(rows.iter().map(|row| Some(row.1))).into_iter().map(|at| rows[at]).collect()
+    };
+    let expected = first.into_iter().filter_map(|(row, x)| {
         row.expected.map(|band| chart::Expected {
             x,
             low: band.low * scale,
@@ -174,17 +198,6 @@ pub fn fill_line(site: &SiteFile, comparison: &Comparison, zone: &TimeZone) -> F
         let known = point.gauge.is_some();
         (point.time_s, if known { point.liquid_level_m } else { f64::NAN })
     });
-    let mut changes: Vec<chart::TriggerChange> = comparison
-        .timelines
-        .iter()
-        .flat_map(|timeline| &timeline.changes)
-        .filter(|change| change.to > change.from)
-        .map(|change| chart::TriggerChange {
-            time_s: change.time_s,
-            mark: mark_of_trigger(change.to, change.confirmed),
-        })
-        .collect();
-    changes.sort_by_key(|change| change.time_s);
     let tank = site.tanks.first().map_or("", |tank| tank.name.as_str());
     FillLine {
         title: format!("{tank} fill line"),
@@ -194,10 +207,35 @@ pub fn fill_line(site: &SiteFile, comparison: &Comparison, zone: &TimeZone) -> F
         actual: actual.collect(),
         max_gap_s: Some(6 * 3600),
         holds: holds(site),
-        trigger_changes: changes,
+        trigger_changes: highest_changes(comparison),
         faults: unknown_loads(comparison),
         moment: None,
     }
+}
+
+/// When the highest trigger of the whole site changed.
+#[must_use]
+pub fn highest_changes(comparison: &Comparison) -> Vec<chart::TriggerChange> {
+    let mut all: Vec<(usize, &super::TriggerChange)> = comparison
+        .timelines
+        .iter()
+        .enumerate()
+        .flat_map(|(place, timeline)| timeline.changes.iter().map(move |change| (place, change)))
+        .collect();
+    all.sort_by_key(|(_, change)| change.time_s);
+    let mut now = vec![Trigger::Normal; comparison.timelines.len()];
+    let mut highest = Trigger::Normal;
+    let mut changes = Vec::new();
+    for (place, change) in all {
+        now[place] = change.to;
+        let reached = now.iter().copied().max().unwrap_or_default();
+        if reached != highest {
+            highest = reached;
+            let mark = mark_of_trigger(reached, change.confirmed);
+            changes.push(chart::TriggerChange { time_s: change.time_s, mark });
+        }
+    }
+    changes
 }
 
 /// Times in which the load was not known.
