@@ -2,6 +2,7 @@
 
 use crate::REFUSED;
 use crate::arguments::CheckArguments;
+use crate::output;
 use brimstead_core::watch::Watcher;
 use brimstead_engine::compare::limits_of;
 use brimstead_engine::expect::Model;
@@ -14,12 +15,12 @@ pub fn run(given: &CheckArguments) -> anyhow::Result<ExitCode> {
         Ok(site) => site,
         Err(problems) => {
             if given.json {
-                println!(
+                output::say(format!(
                     "{}",
                     json!({"problems": problems.to_string().lines().collect::<Vec<_>>()})
-                );
+                ))?;
             } else {
-                println!("{problems}");
+                output::say(problems)?;
             }
             return Ok(ExitCode::from(REFUSED));
         }
@@ -39,19 +40,19 @@ pub fn run(given: &CheckArguments) -> anyhow::Result<ExitCode> {
         }
     }
     if given.json {
-        println!("{}", json!({"problems": [], "warnings": warnings}));
+        output::say(json!({"problems": [], "warnings": warnings}))?;
         return Ok(ExitCode::SUCCESS);
     }
-    println!(
+    output::say(format!(
         "{}: {} layers, {} tanks, {} stages, {} instruments. Nothing to put right.",
         site.site.name,
         site.layers.len(),
         site.tanks.len(),
         site.stages.len(),
         site.instruments.len()
-    );
+    ))?;
     for warning in warnings {
-        println!("  look at {warning}");
+        output::say(format!("  look at {warning}"))?;
     }
     Ok(ExitCode::SUCCESS)
 }

@@ -30,13 +30,13 @@ pub fn run(given: &CompareArguments) -> anyhow::Result<ExitCode> {
         output::pictures(out, &charts)?;
     }
     if given.json {
-        println!("{whole}");
+        output::say(whole)?;
     } else {
-        println!("{}", report.to_text(output::terminal()));
-        changes(&comparison, &zone);
-        import_lines(&imported.report);
+        output::say(report.to_text(output::terminal()))?;
+        changes(&comparison, &zone)?;
+        import_lines(&imported.report)?;
         if let Some(out) = &given.out {
-            println!("\nReport: {}", shown(&out.join("report.html")));
+            output::say(format!("\nReport: {}", shown(&out.join("report.html"))))?;
         }
     }
     Ok(exit_code(&comparison))
@@ -47,7 +47,7 @@ fn shown(path: &Path) -> String {
 }
 
 /// When each trigger rose or fell.
-fn changes(comparison: &Comparison, zone: &jiff::tz::TimeZone) {
+fn changes(comparison: &Comparison, zone: &jiff::tz::TimeZone) -> anyhow::Result<()> {
     let mut lines: Vec<(i64, String)> = Vec::new();
     for timeline in &comparison.timelines {
         for change in &timeline.changes {
@@ -67,33 +67,35 @@ fn changes(comparison: &Comparison, zone: &jiff::tz::TimeZone) {
     }
     lines.sort();
     if !lines.is_empty() {
-        println!("\nChanges of trigger over the run:");
+        output::say("\nChanges of trigger over the run:")?;
     }
     for (_, line) in lines {
-        println!("{line}");
+        output::say(line)?;
     }
+    Ok(())
 }
 
-fn import_lines(report: &ImportReport) {
+fn import_lines(report: &ImportReport) -> anyhow::Result<()> {
     let (mut readings, mut refused) = (0, 0);
     for file in &report.files {
         readings += file.readings;
         refused += file.refused_by_reason.values().sum::<u64>();
     }
-    println!(
+    output::say(format!(
         "\nRead in: {readings} readings from {} files; {refused} fields or rows refused, {} duplicates ignored, {} conflicts.",
         report.files.len(),
         report.duplicates_ignored,
         report.conflicts.len()
-    );
+    ))?;
     for file in &report.files {
         for one in file.refused.iter().take(5) {
-            println!("  {}: {one}", file.file);
+            output::say(format!("  {}: {one}", file.file))?;
         }
     }
     for suspicion in &report.suspicions {
-        println!("  look at: {suspicion}");
+        output::say(format!("  look at: {suspicion}"))?;
     }
+    Ok(())
 }
 
 fn exit_code(comparison: &Comparison) -> ExitCode {

@@ -5,7 +5,7 @@ use brimstead_engine::chart::theme::LIGHT;
 use brimstead_engine::chart::{Size, png};
 use brimstead_engine::compare::page::NamedChart;
 use brimstead_engine::report::{TerminalOptions, colour_wanted};
-use std::io::{self, IsTerminal};
+use std::io::{self, IsTerminal, Write};
 use std::path::Path;
 
 /// Size of a chart as a picture of its own.
@@ -20,6 +20,18 @@ pub fn terminal() -> TerminalOptions {
     TerminalOptions {
         width: if is_terminal { width } else { None },
         colour: colour_wanted(is_terminal),
+    }
+}
+
+/// Prints to standard output. A reader that has seen enough and closed its end (`| head`) is no
+/// fault.
+///
+/// # Errors
+/// Any other failure to write.
+pub fn say(text: impl std::fmt::Display) -> anyhow::Result<()> {
+    match writeln!(io::stdout().lock(), "{text}") {
+        Err(error) if error.kind() == io::ErrorKind::BrokenPipe => Ok(()),
+        other => other.context("standard output could not be written"),
     }
 }
 

@@ -26,20 +26,23 @@ pub fn run(given: &PredictArguments) -> anyhow::Result<ExitCode> {
         output::pictures(out, &charts)?;
     }
     if given.json {
-        println!("{json}");
+        output::say(json)?;
     } else {
-        print_table(&prediction);
+        print_table(&prediction)?;
         if let Some(out) = &given.out {
-            println!("\nPrediction: {}", out.display());
+            output::say(format!("\nPrediction: {}", out.display()))?;
         }
     }
     Ok(ExitCode::SUCCESS)
 }
 
-fn print_table(prediction: &Prediction) {
-    println!("{}: expected readings along the plan, likely (low to high)", prediction.site);
+fn print_table(prediction: &Prediction) -> anyhow::Result<()> {
+    output::say(format!(
+        "{}: expected readings along the plan, likely (low to high)",
+        prediction.site
+    ))?;
     if prediction.invented {
-        println!("{}", brimstead_engine::report::INVENTED);
+        output::say(brimstead_engine::report::INVENTED)?;
     }
     let mut columns = vec![Column::left("moment"), Column::right("level m"), Column::right("kPa")];
     for instrument in &prediction.instruments {
@@ -64,13 +67,14 @@ fn print_table(prediction: &Prediction) {
             row
         });
         let table = Table { columns, rows: rows.collect() };
-        println!();
+        output::say("")?;
         for line in table.lines(None, false) {
-            println!("{line}");
+            output::say(line)?;
         }
     }
-    println!();
+    output::say("")?;
     for caution in brimstead_engine::report::CAUTIONS {
-        println!("{caution}");
+        output::say(caution)?;
     }
+    Ok(())
 }

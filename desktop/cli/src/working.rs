@@ -1,6 +1,7 @@
 //! `brimstead working`.
 
 use crate::arguments::WorkingArguments;
+use crate::output;
 use anyhow::{Context, anyhow};
 use brimstead_engine::compare::compare;
 use brimstead_engine::expect::{LoadHistory, Model};
@@ -38,9 +39,9 @@ pub fn run(given: &WorkingArguments) -> anyhow::Result<ExitCode> {
     };
     let sheet: Sheet = sheet_of(&site, &model, &history, place, at_s)?;
     if given.json {
-        println!("{}", serde_json::to_string_pretty(&sheet)?);
+        output::say(serde_json::to_string_pretty(&sheet)?)?;
     } else {
-        println!("{}", sheet.to_text());
+        output::say(sheet.to_text())?;
     }
     Ok(ExitCode::SUCCESS)
 }
