@@ -38,7 +38,7 @@ pub fn base_stability_with(
     DIAMETER.check(diameter_m)?;
     PRESSURE.check(pressure_kpa)?;
     let search = Search { profile: *profile, least_width_m: diameter_m, most_width_m: diameter_m };
-    let found = search.weakest().stability(pressure_kpa);
+    let found = search.weakest()?.stability(pressure_kpa);
     found.write(profile, working);
     Ok(found)
 }

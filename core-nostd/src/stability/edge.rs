@@ -42,11 +42,12 @@ pub struct Edge {
 ///
 /// # Assumptions
 /// Plane strain, level ground, centre of the circle at or above the loaded level, lowest point
-/// within the profile. The search is bounded: a grid of 65 half chords and seven depths in each
-/// slice, refined wherever it comes within 5 % of the least.
+/// within the profile. The search is bounded: a grid of 65 half chords and up to seven depths in each
+/// slice, refined wherever it comes near the least.
 ///
 /// # Errors
-/// A value outside its range, or a smallest width beyond the diameter.
+/// A value outside its range, a smallest width beyond the diameter, or a profile too thin for any
+/// circle.
 pub fn edge_stability(
     profile: &StrengthProfile<'_>,
     edge: &Edge,
@@ -72,7 +73,7 @@ pub fn edge_stability_with(
         return Err(StabilityError::WiderThanTank { smallest_width_m, diameter_m });
     }
     let search = Search { profile: *profile, least_width_m, most_width_m };
-    let found = search.weakest().stability(pressure_kpa);
+    let found = search.weakest()?.stability(pressure_kpa);
     found.write(profile, working);
     Ok(found)
 }

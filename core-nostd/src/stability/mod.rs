@@ -27,6 +27,7 @@
 //! 5.52 su where 5.14 su is exact.
 
 pub mod base;
+pub mod bearing;
 pub mod edge;
 pub mod slip;
 pub mod squeeze;
@@ -60,6 +61,11 @@ pub enum StabilityError {
     Value(OutOfRange),
     /// A strength profile without slices.
     NoStrength,
+    /// The strength profile is too thin for any circle under a load this wide.
+    TooThin {
+        /// Depth to the base of the profile, m.
+        depth_m: f64,
+    },
     /// An edge failure wider than the tank was asked for.
     WiderThanTank {
         /// Smallest loaded width to be searched, m.
@@ -82,6 +88,11 @@ impl fmt::Display for StabilityError {
             Self::NoStrength => f.write_str(
                 "the strength profile holds no slices. Give thickness, strength at the top and \
                  gradient of each, from the loaded level down.",
+            ),
+            Self::TooThin { depth_m } => write!(
+                f,
+                "the strength profile ends at {depth_m} m, too thin for a slip circle under this \
+                 width; ask for squeezing, or give the ground below."
             ),
             Self::WiderThanTank { smallest_width_m, diameter_m } => write!(
                 f,

@@ -19,25 +19,30 @@
 //! # References
 //! Fellenius 1927; the search by half chord and depth is derived here.
 
-use super::strength::StrengthProfile;
+use super::StabilityError;
+use super::strength::{StrengthProfile, StrengthSlice};
 use crate::math::minimum::minimum;
 use crate::working::{Step, Working};
 
 /// Half chords tried in the first pass.
 const CHORDS: u32 = 64;
-/// Depths tried in every slice, both ends included.
-const DEPTHS: u32 = 6;
+/// Most parts that the depths within a slice are divided into, and the largest part in terms of the
+/// greatest depth.
+const DEPTH_PARTS: f64 = 6.0;
+const LARGEST_PART: f64 = 1.0 / 12.0;
 /// A local minimum of the first pass is searched further when it is within this factor of the
-/// least. Between two chords (7 % apart) a smooth minimum hides less than 1 %, between two depths
-/// less than 3 %.
-const WORTH_SEARCHING: f64 = 1.05;
+/// least found so far. Between two chords (7 % apart) a smooth minimum hides less than 1 %; between
+/// the depths tried in a thick slice less than 3 %, in a thin one next to nothing.
+const WORTH_IN_THICK: f64 = 1.05;
+const WORTH_IN_THIN: f64 = 1.015;
 /// Smallest depth over half chord. Where strength is zero at the surface the least pressure is
 /// reached in the limit of flat circles; there this leaves 1e-6 of it.
 const FLATTEST: f64 = 1e-3;
 /// A least value this near to the end of its stretch, relative to the stretch, may be less beyond.
 const MOVE_ON: f64 = 0.01;
-/// Relative width at which a search ends; the pressure, flat there, is then known to its rounding.
-const NARROW: f64 = 1e-9;
+/// Relative width at which a search ends; the pressure, flat there, is then known to its rounding,
+/// and where it lies on a border the border itself is tried.
+const NARROW: f64 = 1e-8;
 
 /// A slip circle and the pressure under which it fails.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -136,6 +141,15 @@ impl SlipStability {
     }
 }
 
+/// Parts that the depths from `low` to `high` within a slice are divided into.
+fn depth_steps(low: f64, high: f64) -> f64 {
+    libm::ceil((high - low) / (LARGEST_PART * high)).clamp(1.0, DEPTH_PARTS)
+}
+
+fn worth_searching((top_m, thickness_m): (f64, f64)) -> f64 {
+    if depth_steps(top_m, top_m + thickness_m) > 1.0 { WORTH_IN_THICK } else { WORTH_IN_THIN }
+}
+
 /// The part of a circle below ground.
 #[derive(Clone, Copy)]
 struct Arc {
@@ -165,7 +179,7 @@ impl Arc {
     }
 
     /// Strength along the circle inside a slice, kN per metre of edge.
-    fn strength_kn_per_m(&self, top_m: f64, slice: &super::strength::StrengthSlice) -> f64 {
+    fn strength_kn_per_m(&self, top_m: f64, slice: &StrengthSlice) -> f64 {
         let (sine_1, cosine_1) = self.sine_and_cosine(top_m);
         let (sine_2, cosine_2) = self.sine_and_cosine(top_m + slice.thickness_m);
         let angle = libm::atan2(sine_1, cosine_1) - libm::atan2(sine_2, cosine_2);
@@ -216,16 +230,17 @@ impl Search<'_> {
 
     /// Least pressure over depth within a slice, and its depth; with `fine` to the last digit.
     fn over_depth(&self, half_m: f64, (low, high): (f64, f64), fine: bool) -> (f64, f64) {
+        let steps = depth_steps(low, high);
         // Not a rounding beyond the base: a missing arc of 1e-8 radians would count.
-        let at =
-            |step: f64| (low + (high - low) * (step / f64::from(DEPTHS)).clamp(0.0, 1.0)).min(high);
+        let at = |step: f64| (low + (high - low) * (step / steps).clamp(0.0, 1.0)).min(high);
         let mut best = (f64::INFINITY, 0.0);
-        for step in 0..=DEPTHS {
-            let step = f64::from(step);
+        let mut step = 0.0;
+        while step <= steps {
             let value = self.ultimate_kpa(half_m, at(step));
             if value < best.0 {
                 best = (value, step);
             }
+            step += 1.0;
         }
         if fine {
             let (from, to) = (at(best.1 - 1.0), at(best.1 + 1.0));
@@ -256,26 +271,40 @@ impl Search<'_> {
         }
     }
 
-    /// The circle that fails under the least pressure.
-    pub(super) fn weakest(&self) -> SlipCircle {
-        let slices = || self.profile.slices().map(|(top_m, slice)| (top_m, slice.thickness_m));
+    /// A bound on the least pressure from circles that end at the faces of slices.
+    fn rough_least_kpa(&self) -> f64 {
         let mut least = f64::INFINITY;
-        for slice in slices() {
-            self.local_minima(slice, |value, _, _| least = least.min(value));
+        for step in 0..=CHORDS {
+            let half_m = self.half_chord_m(step);
+            for (top_m, slice) in self.profile.slices() {
+                if let Some((_, depth_m)) = Self::depths_m(half_m, top_m, slice.thickness_m) {
+                    least = least.min(self.ultimate_kpa(half_m, depth_m));
+                }
+            }
         }
-        let worth = WORTH_SEARCHING * least;
-        let mut best = (f64::INFINITY, 0.0, 0.0);
-        for slice in slices() {
+        least
+    }
+
+    /// The circle that fails under the least pressure.
+    ///
+    /// # Errors
+    /// A profile too thin for any circle of the widths asked for.
+    pub(super) fn weakest(&self) -> Result<SlipCircle, StabilityError> {
+        let mut best = (self.rough_least_kpa(), None);
+        for (top_m, slice) in self.profile.slices() {
+            let slice = (top_m, slice.thickness_m);
             self.local_minima(slice, |value, low, high| {
-                if value <= worth {
-                    let found = self.refined(slice, low, high);
-                    if found.0 < best.0 {
-                        best = found;
+                if value <= best.0 * worth_searching(slice) {
+                    let (value, half_m, depth_m) = self.refined(slice, low, high);
+                    if value <= best.0 {
+                        best = (value, Some((half_m, depth_m)));
                     }
                 }
             });
         }
-        self.circle(best.1, best.2)
+        let (half_m, depth_m) =
+            best.1.ok_or(StabilityError::TooThin { depth_m: self.profile.depth_m() })?;
+        Ok(self.circle(half_m, depth_m))
     }
 
     /// Least pressure with the lowest point in a slice, near a stretch of half chords: pressure,

@@ -1,5 +1,7 @@
 //! A hand-check sheet that tests can read.
 
+#![allow(dead_code, reason = "shared by several tests, each of which uses a part of it")]
+
 use brimstead_core::working::{Step, Working};
 
 /// Keeps the steps by name.
@@ -19,6 +21,11 @@ impl Sheet {
     pub fn value(&self, name: &str) -> f64 {
         let found = self.steps.iter().find(|(n, ..)| n == name);
         found.unwrap_or_else(|| panic!("no step {name}")).1
+    }
+
+    /// Sum over the steps of a name.
+    pub fn sum(&self, name: &str) -> f64 {
+        self.steps.iter().filter(|(n, ..)| n == name).map(|(_, value, _)| value).sum()
     }
 
     /// Source that came with the first step.
