@@ -1,17 +1,12 @@
 // The door to the shell. Nothing else in the window asks the shell, the disk or a network.
-import type { ChartView } from './generated/ChartView';
-import type { ContoursView } from './generated/ContoursView';
-import type { FaultView } from './generated/FaultView';
-import type { Field } from './generated/Field';
-import type { MomentView } from './generated/MomentView';
-import type { Opened } from './generated/Opened';
-import type { ReadingView } from './generated/ReadingView';
-import type { SectionView } from './generated/SectionView';
-import type { Theme } from './generated/Theme';
-import type { Units } from './generated/Units';
-import type { WorkingView } from './generated/WorkingView';
 import type {
+  Against,
+  ChartView,
+  ContoursView,
   Decision,
+  FaultView,
+  Field,
+  Hidden,
   ImportCorrection,
   ImportDone,
   ImportView,
@@ -19,57 +14,29 @@ import type {
   LimitProposal,
   LimitsView,
   LogView,
+  MomentView,
+  Opened,
+  Picture,
+  ReadingView,
+  SectionView,
+  Signature,
   SiteCheckView,
   SiteTextView,
-} from './records';
+  Units,
+  WorkingView,
+} from './types';
 
-export type { ChartView } from './generated/ChartView';
-export type { ContourLine } from './generated/ContourLine';
-export type { ContoursView } from './generated/ContoursView';
-export type { EntryView } from './generated/EntryView';
-export type { FaultView } from './generated/FaultView';
-export type { Field } from './generated/Field';
-export type { HoverPoint } from './generated/HoverPoint';
-export type { InstrumentNow } from './generated/InstrumentNow';
-export type { LayerView } from './generated/LayerView';
-export type { MomentView } from './generated/MomentView';
-export type { Opened } from './generated/Opened';
-export type { Quantity } from './generated/Quantity';
-export type { ReadingView } from './generated/ReadingView';
-export type { SectionView } from './generated/SectionView';
-export type { TankView } from './generated/TankView';
-export type { Theme } from './generated/Theme';
-export type { TriggerView } from './generated/TriggerView';
-export type { Units } from './generated/Units';
-export type { WorkingLine } from './generated/WorkingLine';
-export type { WorkingView } from './generated/WorkingView';
-export type * from './records';
+export type * from './types';
 export { BackendError } from './error';
-
-/** A picture as the page has room for it. */
-export interface Picture {
-  width: number;
-  height: number;
-  theme: Theme;
-}
-
-/** What may be left out of the chart of a reading. */
-export type Hideable = 'band' | 'expected' | 'limits' | 'raw';
 
 /** Which chart of a reading is asked for. */
 export interface ReadingChart extends Picture {
   id: string;
-  against: 'time' | 'pressure';
+  against: Against;
   timeMs: number;
   /** Ends of the time axis; null takes in everything. */
   range: [number, number] | null;
-  hidden: Hideable[];
-}
-
-/** Who writes something down and why. */
-export interface Signature {
-  who: string;
-  why: string;
+  hidden: Hidden[];
 }
 
 /**

@@ -2,18 +2,24 @@
 // between two recorded moments the earlier one is shown.
 import type { Backend } from './backend';
 import { BackendError } from './error';
-import type { ChartView } from './generated/ChartView';
-import type { ContoursView } from './generated/ContoursView';
-import type { FaultView } from './generated/FaultView';
-import type { Field } from './generated/Field';
-import type { InstrumentNow } from './generated/InstrumentNow';
-import type { MomentView } from './generated/MomentView';
-import type { Opened } from './generated/Opened';
-import type { ReadingView } from './generated/ReadingView';
-import type { SectionView } from './generated/SectionView';
-import type { Units } from './generated/Units';
-import type { WorkingView } from './generated/WorkingView';
-import type { ImportView, InstrumentInfo, LimitsView, LogView, SiteCheckView } from './records';
+import type {
+  ChartView,
+  ContoursView,
+  FaultView,
+  Field,
+  ImportView,
+  InstrumentInfo,
+  InstrumentNow,
+  LimitsView,
+  LogView,
+  MomentView,
+  Opened,
+  ReadingView,
+  SectionView,
+  SiteCheckView,
+  Units,
+  WorkingView,
+} from './types';
 
 interface Recorded {
   moments: {

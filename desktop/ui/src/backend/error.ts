@@ -1,4 +1,4 @@
-import type { Failure } from './generated/Failure';
+import type { Failure } from './types';
 
 /** The one kind of error that leaves this folder. */
 export class BackendError extends Error {

@@ -10,7 +10,8 @@ export type ChartView = {
  */
 svg: string, 
 /**
- * Pixels and values of the ends of the x axis: px0, px1, v0, v1.
+ * Pixels and values of the ends of the x axis: px0, px1, v0, v1. Values of a time axis are
+ * seconds of Unix time.
  */
 x: [number, number, number, number], 
 /**
@@ -22,6 +23,6 @@ y: [number, number, number, number],
  */
 hover: Array<HoverPoint>, 
 /**
- * Changes of a trigger, to jump to.
+ * Changes of a trigger, to jump to, by time.
  */
-events: Array<HoverPoint> };
+events: Array<HoverPoint>, };

@@ -15,4 +15,4 @@ label_at: [number, number],
 /**
  * Points along it.
  */
-points: Array<[number, number]> };
+points: Array<[number, number]>, };

@@ -16,4 +16,4 @@ lines: Array<ContourLine>,
 /**
  * What they are and under which assumption, in words.
  */
-note: string };
+note: string, };

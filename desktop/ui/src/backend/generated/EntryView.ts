@@ -19,4 +19,4 @@ who: string,
 /**
  * Why, or the note.
  */
-text: string };
+text: string, };

@@ -11,4 +11,4 @@ code: string,
 /**
  * What happened, what it means, what to do.
  */
-message: string };
+message: string, };

@@ -39,4 +39,4 @@ evidence: string,
 /**
  * What to do.
  */
-next_step: string };
+next_step: string, };

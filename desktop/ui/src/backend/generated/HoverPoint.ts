@@ -15,4 +15,4 @@ text: string,
 /**
  * The instant, to move the cursor there.
  */
-time_ms: number };
+time_ms: number, };

@@ -67,7 +67,7 @@ band_position: number | null,
  */
 margin: string | null, 
 /**
- * Age of the reading in words.
+ * Age of the reading in words ("8 min").
  */
 age: string, 
 /**
@@ -85,4 +85,4 @@ depth_m: number,
 /**
  * Distance from the plane of the section, m.
  */
-off_section_m: number };
+off_section_m: number, };

@@ -19,4 +19,4 @@ base_m: number,
 /**
  * Free-draining.
  */
-drained: boolean };
+drained: boolean, };

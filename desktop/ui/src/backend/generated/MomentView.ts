@@ -52,11 +52,11 @@ stage_detail: string,
  */
 to_limit: string | null, 
 /**
- * Time to lower the liquid by 1 m at the stated pump rate.
+ * Time to lower the liquid at the stated pump rate ("7 h 33 min to lower 1 m").
  */
 to_lower: string | null, 
 /**
- * Instruments at Normal, Watch, Review, Stop.
+ * Instruments at Normal (judged on a good reading), Watch, Review, Stop.
  */
 counts: [number, number, number, number], 
 /**
@@ -82,4 +82,4 @@ plan: string,
 /**
  * Every instrument at this moment, in the order of the site file.
  */
-instruments: Array<InstrumentNow> };
+instruments: Array<InstrumentNow>, };

@@ -47,4 +47,4 @@ run: string | null,
 /**
  * What goes with every output that could be acted on.
  */
-cautions: Array<string> };
+cautions: Array<string>, };

@@ -15,4 +15,4 @@ unit: string,
 /**
  * Value and unit as they are to be read.
  */
-text: string };
+text: string, };

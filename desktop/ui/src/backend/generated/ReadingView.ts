@@ -38,4 +38,4 @@ sentence: Array<string>,
 /**
  * Life story and notes.
  */
-story: Array<EntryView> };
+story: Array<EntryView>, };

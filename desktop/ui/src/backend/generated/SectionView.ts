@@ -30,4 +30,4 @@ drains: [number, number, number, number, number] | null,
 /**
  * Tanks on the section.
  */
-tanks: Array<TankView> };
+tanks: Array<TankView>, };

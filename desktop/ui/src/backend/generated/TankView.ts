@@ -31,4 +31,4 @@ liquid_level_m: number | null,
 /**
  * Label with diameter in the units shown.
  */
-label: string };
+label: string, };

@@ -27,4 +27,4 @@ value: string,
 /**
  * Source of the method.
  */
-source: string };
+source: string, };

@@ -16,4 +16,4 @@ lines: Array<WorkingLine>,
 /**
  * The whole sheet as text, to copy.
  */
-text: string };
+text: string, };
