@@ -204,7 +204,8 @@ pub(super) struct Search<'a> {
 
 impl Search<'_> {
     fn widths(&self, half_m: f64) -> (f64, f64) {
-        let loaded_m = half_m.clamp(self.least_width_m, self.most_width_m);
+        // Not `clamp`, which panics when its limits are out of order.
+        let loaded_m = half_m.max(self.least_width_m).min(self.most_width_m);
         (loaded_m, 2.0 * half_m - loaded_m)
     }
 

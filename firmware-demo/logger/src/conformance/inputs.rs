@@ -1,5 +1,6 @@
-//! The invented tank, ground, drains and gauge.
+//! The invented tank, ground, drains, gauge and rounds.
 
+use super::rounds::Rounds;
 use brimstead_core::config::Name;
 use brimstead_core::consolidation::{DrainPattern, Drains};
 use brimstead_core::expectation::{DrainZone, SiteModel};
@@ -14,6 +15,7 @@ use brimstead_core::load::{PlanPosition, Tank};
 pub struct Inputs {
     pub(super) site: SiteModel,
     pub(super) gauge: WireCalibration,
+    pub(super) rounds: Rounds,
 }
 
 impl Inputs {
@@ -23,7 +25,7 @@ impl Inputs {
     // Its copies must not stay on the stack while the numbers are computed.
     #[inline(never)]
     pub fn invented() -> Option<Self> {
-        Some(Self { site: site()?, gauge: GAUGE })
+        Some(Self { site: site()?, gauge: GAUGE, rounds: Rounds::invented() })
     }
 }
 

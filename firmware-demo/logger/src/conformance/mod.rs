@@ -4,6 +4,7 @@
 //! against published values; here only sameness counts, so tank, ground and gauge are invented.
 
 mod inputs;
+mod rounds;
 
 pub use inputs::Inputs;
 
@@ -62,7 +63,8 @@ pub fn compute(inputs: &Inputs, mut each: impl FnMut(&'static str, f64)) -> Opti
     }
     pore_pressures(inputs, &mut each)?;
     gauge_pressures(inputs, &mut each)?;
-    expected_readings(&inputs.site, &mut each)
+    expected_readings(&inputs.site, &mut each)?;
+    inputs.rounds.compute(&mut each)
 }
 
 // These parts stay functions of their own: joined, they would all hold their stack at once.
@@ -208,9 +210,19 @@ mod tests {
             let value = f64::from_bits(u64::from_str_radix(bits, 16).unwrap());
             assert!(!name.is_empty() && value.is_finite(), "{line}");
         }
-        for room in
-            ["applied", "disc", "ring", "primary", "immediate", "excess", "gauge", "expected"]
-        {
+        for room in [
+            "applied",
+            "disc",
+            "ring",
+            "primary",
+            "immediate",
+            "excess",
+            "gauge",
+            "expected",
+            "edge",
+            "shell",
+            "forecast",
+        ] {
             assert!(text.contains(room), "nothing of {room} is compared");
         }
     }
