@@ -71,6 +71,8 @@ fn asaoka_quantity(found: &Asaoka, quantity: &str) -> Option<f64> {
         "beta1_hi95" => slope.high,
         "S_ult" => 1e3 * found.ultimate.settlement_m.unwrap(),
         "se_S_ult_delta" => 1e3 * found.ultimate.deviation_m.unwrap(),
+        "S_ult_lo95_delta" => 1e3 * found.ultimate.linear_interval_m.unwrap().low,
+        "S_ult_hi95_delta" => 1e3 * found.ultimate.linear_interval_m.unwrap().high,
         "S_ult_lo95_fieller" => 1e3 * interval.low,
         "S_ult_hi95_fieller" => 1e3 * interval.high,
         "cv_first_mode" => cv,
@@ -132,6 +134,18 @@ fn a_consolidation_curve_is_forecast_late_and_refused_early() {
     let late = data("A3_exact_terzaghi_U_ge_60");
     let found = asaoka(&late, late[0].elapsed_s, 60.0 * DAY_S).unwrap();
     assert_eq!(found.ultimate.judgement, Judgement::Usable);
+}
+
+/// First term of Terzaghi's series in steps of a time factor of 0.1: b1 = exp(-pi^2/4 0.1) = 0.7813.
+#[test]
+fn the_first_mode_has_the_slope_of_the_closed_form() {
+    let readings: Vec<_> = (0..8)
+        .map(|i| {
+            at(f64::from(i), 0.5 * (1.0 - 0.8 * libm::exp(-0.25 * PI * PI * 0.1 * f64::from(i))))
+        })
+        .collect();
+    let found = asaoka(&readings, 0.0, DAY_S).unwrap();
+    assert!((found.slope - 0.7813).abs() < 5e-5, "{}", found.slope);
 }
 
 #[test]

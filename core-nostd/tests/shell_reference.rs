@@ -9,6 +9,7 @@
 )]
 
 mod reference_table;
+mod sheet;
 
 use brimstead_core::math::least_squares::FitError;
 use brimstead_core::shell::ShellError;
@@ -18,6 +19,7 @@ use core::f64::consts::PI;
 use proptest::prelude::*;
 use proptest::test_runner::{Config, RngSeed};
 use reference_table::{Worst, time};
+use sheet::Sheet;
 
 /// Printed to 15 digits; millimetres.
 const PRINTED_MM: f64 = 1e-11;
@@ -213,6 +215,19 @@ fn a_limit_inside_the_noise_is_flagged() {
     let low = ShellSteel::new(60.0, 40.0, 200_000.0).unwrap();
     assert!(fit.limit(&shape, &low).inside_noise);
     assert!(!fit.limit(&shape, &steel()).inside_noise);
+}
+
+#[test]
+fn the_hand_check_holds_the_result() {
+    let points = readings("S2_even24_dip");
+    let fit = PerimeterFit::new(&points, DIAMETER_M, 0.001).unwrap();
+    let mut sheet = Sheet::default();
+    fit.write(&mut sheet);
+    assert_eq!(sheet.value("tilt across the diameter"), fit.tilt().across_diameter_m);
+    let shape = fit.shape_with(7, &mut sheet).unwrap();
+    assert_eq!(sheet.value("out-of-plane deflection"), shape.out_of_plane_m.unwrap());
+    let limit = fit.limit_with(&shape, &steel(), &mut sheet);
+    assert_eq!(sheet.value("permitted out-of-plane deflection"), limit.permitted_m);
 }
 
 #[test]

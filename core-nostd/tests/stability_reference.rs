@@ -17,7 +17,9 @@ use brimstead_core::stability::bearing::{Roughness, circular_bearing};
 use brimstead_core::stability::edge::{Edge, edge_stability, edge_stability_with};
 use brimstead_core::stability::slip::SlipStability;
 use brimstead_core::stability::squeeze::{Plan, squeezing_pressure_kpa};
-use brimstead_core::stability::strength::{StrengthGain, StrengthProfile, StrengthSlice};
+use brimstead_core::stability::strength::{
+    FaceStress, StrengthGain, StrengthProfile, StrengthSlice,
+};
 use proptest::prelude::*;
 use proptest::test_runner::{Config, RngSeed};
 use reference_table::{Row, Worst, time};
@@ -312,6 +314,34 @@ fn strength_gain_agrees_with_the_table() {
         let before = law.strength_kpa(row.number("sv0_kPa"), yield_kpa).unwrap();
         assert_relative(before, row.number("su_initial_kPa"), 1e-14, "initial su");
     }
+}
+
+/// From the effective stress of a column to a factor of safety: consolidation under the load must
+/// raise it.
+#[test]
+fn a_hold_raises_the_factor_of_safety_by_the_strength_it_gains() {
+    let gain = StrengthGain::new(0.22, 0.8).unwrap();
+    let margin = |consolidated: f64| {
+        let face = |depth_m: f64| FaceStress {
+            effective_kpa: 10.0 + 6.0 * depth_m + consolidated * 80.0,
+            preconsolidation_kpa: 18.0 + 6.0 * depth_m,
+        };
+        let slices: Vec<_> = (0..12)
+            .map(|i| gain.slice(1.0, face(f64::from(i)), face(f64::from(i + 1))).unwrap())
+            .collect();
+        edge(&slices, 30.0, 80.0).factor_of_safety
+    };
+    let (before, after) = (margin(0.0), margin(0.6));
+    assert!(before < 1.0 && after > 1.5 * before, "{before} {after}");
+    let one = gain
+        .slice(
+            2.0,
+            FaceStress { effective_kpa: 40.0, preconsolidation_kpa: 40.0 },
+            FaceStress { effective_kpa: 60.0, preconsolidation_kpa: 40.0 },
+        )
+        .unwrap();
+    assert!((one.undrained_strength_kpa - 8.8).abs() < 1e-13, "{one:?}");
+    assert!((one.gradient_kpa_per_m - 2.2).abs() < 1e-13, "{one:?}");
 }
 
 #[test]

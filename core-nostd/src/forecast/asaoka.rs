@@ -110,10 +110,12 @@ pub fn asaoka_with(
         share,
         later_m: later.as_ref().and_then(end_of),
     };
+    let deviation_m = settlement_m.and_then(|_| end_deviation(&line));
     let ultimate = Ultimate {
         settlement_m,
         interval_m,
-        deviation_m: settlement_m.and_then(|_| end_deviation(&line)),
+        deviation_m,
+        linear_interval_m: line.interval_about(settlement_m, deviation_m),
         share,
         judgement: evidence.judgement(),
     };

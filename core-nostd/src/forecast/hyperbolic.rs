@@ -98,6 +98,7 @@ pub fn hyperbolic_with(
         later_m: later.as_ref().and_then(end_of),
     };
     let deviation = line.slope_deviation();
+    let deviation_m = settlement_m.and_then(|end_m| Some(deviation? * end_m * end_m));
     working.step(Step {
         name: "slope of the hyperbolic plot",
         value: line.slope,
@@ -125,7 +126,8 @@ pub fn hyperbolic_with(
         ultimate: Ultimate {
             settlement_m,
             interval_m,
-            deviation_m: settlement_m.and_then(|end_m| Some(deviation? * end_m * end_m)),
+            deviation_m,
+            linear_interval_m: line.interval_about(settlement_m, deviation_m),
             share,
             judgement: evidence.judgement(),
         },

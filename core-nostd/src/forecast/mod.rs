@@ -95,6 +95,8 @@ pub struct Ultimate {
     pub interval_m: Option<Interval>,
     /// Standard deviation by linear propagation, m; too small where the interval is lopsided.
     pub deviation_m: Option<f64>,
+    /// Student's quantile times that deviation to both sides, m: the interval many texts give.
+    pub linear_interval_m: Option<Interval>,
     /// Share of it that has happened.
     pub share: Option<f64>,
     /// Whether to use it.
@@ -255,13 +257,18 @@ impl Line {
         Some((self.fit.residual_deviation()?, quantile(&self.fit)?))
     }
 
+    /// Interval about a value with this standard deviation.
+    fn interval_about(&self, value: Option<f64>, deviation: Option<f64>) -> Option<Interval> {
+        let reach = self.scatter()?.1 * deviation?;
+        value.map(|value| Interval { low: value - reach, high: value + reach })
+    }
+
     fn slope_deviation(&self) -> Option<f64> {
         Some(self.scatter()?.0 * libm::sqrt(self.fit.variance_factor(&[0.0, 1.0])))
     }
 
     fn slope_interval(&self) -> Option<Interval> {
-        let reach = self.scatter()?.1 * self.slope_deviation()?;
-        Some(Interval { low: self.slope - reach, high: self.slope + reach })
+        self.interval_about(Some(self.slope), self.slope_deviation())
     }
 }
 

@@ -3,6 +3,7 @@
 use super::{SETTLEMENT, SHELL_DIAMETER, ShellError};
 use crate::math::least_squares::LeastSquares;
 use crate::quantity::{Bounded, OutOfRange};
+use crate::working::{Silent, Step, Working};
 use core::f64::consts::FRAC_PI_2;
 
 /// Distance of a floor point from the shell.
@@ -54,12 +55,38 @@ pub fn dish(
     centre_settlement_m: f64,
     edge_settlement_m: f64,
 ) -> Result<Dish, OutOfRange> {
+    dish_with(diameter_m, crown_m, centre_settlement_m, edge_settlement_m, &mut Silent)
+}
+
+/// As [`dish`], writing what is left of the crown.
+///
+/// # Errors
+/// As [`dish`].
+pub fn dish_with(
+    diameter_m: f64,
+    crown_m: f64,
+    centre_settlement_m: f64,
+    edge_settlement_m: f64,
+    working: &mut impl Working,
+) -> Result<Dish, OutOfRange> {
     SHELL_DIAMETER.check(diameter_m)?;
     SETTLEMENT.check(crown_m)?;
     SETTLEMENT.check(centre_settlement_m)?;
     SETTLEMENT.check(edge_settlement_m)?;
     let dish_m = centre_settlement_m - edge_settlement_m;
     let crown_left_m = crown_m - dish_m;
+    working.step(Step {
+        name: "crown left",
+        value: crown_left_m,
+        unit: "m",
+        formula: "crown - (s_centre - s_edge)",
+        inputs: &[
+            ("crown", crown_m),
+            ("s_centre", centre_settlement_m),
+            ("s_edge", edge_settlement_m),
+        ],
+        source: "",
+    });
     Ok(Dish {
         dish_m,
         dish_over_diameter: dish_m / diameter_m,
@@ -98,6 +125,19 @@ pub fn edge_settlement(
     floor: &[FloorPoint],
     width_m: f64,
 ) -> Result<EdgeSettlement, ShellError> {
+    edge_settlement_with(shell_settlement_m, floor, width_m, &mut Silent)
+}
+
+/// As [`edge_settlement`], writing its step.
+///
+/// # Errors
+/// As [`edge_settlement`].
+pub fn edge_settlement_with(
+    shell_settlement_m: f64,
+    floor: &[FloorPoint],
+    width_m: f64,
+    working: &mut impl Working,
+) -> Result<EdgeSettlement, ShellError> {
     SETTLEMENT.check(shell_settlement_m)?;
     EDGE_WIDTH.check(width_m)?;
     let mut sums = LeastSquares::<2>::new();
@@ -108,8 +148,21 @@ pub fn edge_settlement(
             sums.add([1.0, point.from_shell_m], point.settlement_m);
         }
     }
-    let [continued_m, _] = sums.solve()?.coefficients;
+    let [continued_m, slope] = sums.solve()?.coefficients;
     let settlement_m = shell_settlement_m - continued_m;
+    working.step(Step {
+        name: "edge settlement",
+        value: settlement_m,
+        unit: "m",
+        formula: "s_shell - c of the least-squares line s = c + m x beyond the width",
+        inputs: &[
+            ("s_shell", shell_settlement_m),
+            ("c", continued_m),
+            ("m", slope),
+            ("width", width_m),
+        ],
+        source: "",
+    });
     Ok(EdgeSettlement { settlement_m, width_m, ratio: settlement_m / width_m })
 }
 

@@ -312,7 +312,39 @@ impl<'a> PerimeterFit<'a> {
     /// A point's second difference beside the limit of the shell.
     #[must_use]
     pub fn limit(&self, shape: &PointShape, steel: &ShellSteel) -> OutOfPlaneLimit {
+        self.limit_with(shape, steel, &mut Silent)
+    }
+
+    /// As [`PerimeterFit::limit`], writing the limit and what noise can show.
+    pub fn limit_with(
+        &self,
+        shape: &PointShape,
+        steel: &ShellSteel,
+        working: &mut impl Working,
+    ) -> OutOfPlaneLimit {
         let permitted_m = steel.permitted_m(shape.arc_before_m, shape.arc_after_m);
+        working.step(Step {
+            name: "permitted out-of-plane deflection",
+            value: permitted_m,
+            unit: "m",
+            formula: "11 a b Y/(2 E H)",
+            inputs: &[
+                ("a", shape.arc_before_m),
+                ("b", shape.arc_after_m),
+                ("Y", steel.yield_mpa),
+                ("E", steel.young_mpa),
+                ("H", steel.height_m),
+            ],
+            source: "API 653 Annex B.3.2, older editions; a b for unequal arcs",
+        });
+        working.step(Step {
+            name: "out-of-plane deflection that survey noise alone can show",
+            value: shape.noise_limit_m,
+            unit: "m",
+            formula: "z sd_D, passed anywhere in 1 survey of 20",
+            inputs: &[("z", self.noise_quantile), ("sd_D", shape.noise_deviation_m)],
+            source: "",
+        });
         OutOfPlaneLimit {
             permitted_m,
             utilisation: shape.out_of_plane_m.map(|value| value.abs() / permitted_m),

@@ -13,7 +13,7 @@
 //!
 //! # A moment in time
 //! Strength belongs to an effective stress. For a moment of the filling, put the effective stress
-//! of each sublayer into [`strength::StrengthGain`], hand the slices to
+//! at the faces of each sublayer into [`strength::StrengthGain::slice`], hand the slices to
 //! [`strength::StrengthProfile::new`], and search. Strength from the effective stress *before*
 //! the shearing is what the methods here want; pore pressures measured during filling say nothing
 //! about those at failure and flatter a margin that is computed with them (Ladd 1991).

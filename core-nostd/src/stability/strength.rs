@@ -134,7 +134,42 @@ impl StrengthGain {
     }
 }
 
+/// Stress at one face of a slice.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct FaceStress {
+    /// Effective vertical stress now, kPa.
+    pub effective_kpa: f64,
+    /// Preconsolidation pressure, kPa.
+    pub preconsolidation_kpa: f64,
+}
+
+impl StrengthGain {
+    /// Slice of a strength profile between two faces of the ground, from the stress at each; the
+    /// strength is taken as linear between them, so that slices should not be thick where stress
+    /// changes much.
+    ///
+    /// # Errors
+    /// A value outside its range.
+    pub fn slice(
+        &self,
+        thickness_m: f64,
+        top: FaceStress,
+        base: FaceStress,
+    ) -> Result<StrengthSlice, OutOfRange> {
+        SLICE_THICKNESS.check(thickness_m)?;
+        let at_top = self.strength_kpa(top.effective_kpa, top.preconsolidation_kpa)?;
+        let at_base = self.strength_kpa(base.effective_kpa, base.preconsolidation_kpa)?;
+        Ok(StrengthSlice {
+            thickness_m,
+            undrained_strength_kpa: at_top,
+            gradient_kpa_per_m: (at_base - at_top) / thickness_m,
+        })
+    }
+}
+
 /// A slice of the ground with strength linear over its thickness.
+///
+/// For a drained layer, which has no undrained strength, give `sigma_v' tan phi'`; 0 leaves it out.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct StrengthSlice {
     /// Thickness, m.
