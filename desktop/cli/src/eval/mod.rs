@@ -3,9 +3,13 @@
 //! the core and back; it computes nothing itself.
 
 mod consolidation;
+mod forecast;
 mod instrument;
+mod layered;
 mod request;
 mod settlement;
+mod shell;
+mod stability;
 mod stress;
 mod trail;
 
@@ -88,12 +92,19 @@ const QUANTITIES: &[(&str, request::Handler)] = &[
     ("rigid_disc_stress", stress::rigid_disc_stress),
     ("rigid_disc_settlement", stress::rigid_disc_settlement),
     ("westergaard_disc_stress", stress::westergaard_disc_stress),
+    ("layered_response", layered::layered_response),
     ("site_stress", stress::site_stress),
+    ("undrained_pore_pressure", layered::undrained_pore_pressure),
     ("consolidation", consolidation::consolidation),
     ("terzaghi", consolidation::terzaghi),
     ("drain_consolidation", consolidation::drain_consolidation),
     ("primary_settlement", settlement::primary),
     ("schmertmann", settlement::schmertmann),
+    ("edge_stability", stability::edge_stability),
+    ("strength_gain", stability::strength_gain),
+    ("perimeter_fit", shell::perimeter_fit),
+    ("asaoka", forecast::asaoka),
+    ("hyperbolic", forecast::hyperbolic),
     ("wire_pressure", instrument::wire_pressure),
 ];
 

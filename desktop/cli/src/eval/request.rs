@@ -94,19 +94,23 @@ pub fn read<T: DeserializeOwned>(input: &RawValue) -> Result<T, Refusal> {
     })
 }
 
-/// Turns the reader's words into a field and a sentence: for a missing or unknown key the field is
-/// the key itself, not the object around it.
+/// Turns the reader's words into a field and a sentence: for a missing, unknown or repeated key the
+/// field is the key itself, not the object around it.
 fn field_and_message(path: &str, message: &str) -> (String, String) {
     // The position within the line helps nobody who wrote the line with a program.
     let message = message.split(" at line ").next().unwrap_or(message);
-    for (marker, what) in [("missing field `", "is missing"), ("unknown field `", "is not known")] {
+    for (marker, what, remedy) in [
+        ("missing field `", "is missing", "; add it"),
+        ("unknown field `", "is not known", ""),
+        ("duplicate field `", "is given twice", "; give it once"),
+    ] {
         if let Some(rest) = message.strip_prefix(marker)
             && let Some((key, rest)) = rest.split_once('`')
         {
             // An unknown key's path already ends with the key.
             let parent = path.strip_suffix(key).map_or(path, |p| p.trim_end_matches('.'));
             let field = if parent.is_empty() { key.to_string() } else { format!("{parent}.{key}") };
-            let remedy = if rest.is_empty() { "; add it" } else { rest };
+            let remedy = if rest.is_empty() { remedy } else { rest };
             return (field, format!("{key} {what}{remedy}"));
         }
     }

@@ -82,7 +82,7 @@ fn ring(radius_m: f64, line_load_kn_per_m: f64, poisson: f64) -> Result<Ring, Re
 }
 
 /// Evaluates at each point; a refusal names the point.
-fn at_points<T>(
+pub(super) fn at_points<T>(
     points: &[(f64, f64)],
     mut value: impl FnMut(f64, f64) -> Result<T, StressError>,
 ) -> Result<Vec<T>, Refusal> {
@@ -93,7 +93,7 @@ fn at_points<T>(
     .collect()
 }
 
-fn stresses(all: &[AxisymmetricStress]) -> Value {
+pub(super) fn stresses(all: &[AxisymmetricStress]) -> Value {
     let column = |pick: fn(&AxisymmetricStress) -> f64| all.iter().map(pick).collect::<Vec<f64>>();
     json!({
         "sigma_z_kpa": column(|s| s.sigma_z_kpa),
@@ -103,7 +103,7 @@ fn stresses(all: &[AxisymmetricStress]) -> Value {
     })
 }
 
-fn displacements(all: &[Displacement]) -> Value {
+pub(super) fn displacements(all: &[Displacement]) -> Value {
     let settlement: Vec<f64> = all.iter().map(|moved| moved.settlement_m).collect();
     let radial: Vec<f64> = all.iter().map(|moved| moved.radial_m).collect();
     json!({"settlement_m": settlement, "radial_m": radial})
