@@ -87,6 +87,7 @@ fn fill_line() -> FillLine {
     let actual = (0..).map(|step| f64::from(step) * 0.25).take_while(|day| *day <= 68.2);
     FillLine {
         title: "Fill line, tank T2 (invented)".to_owned(),
+        unit: "m".to_owned(),
         zone: zone(),
         span_s: None,
         plan: PLAN.iter().map(|(day, level)| (at(*day), *level)).collect(),
@@ -178,6 +179,7 @@ fn against_pressure() -> PressureChart {
     PressureChart {
         title: "P9 piezometer".to_owned(),
         quantity: piezometer("", (0.0, 1.0), 1.0).quantity,
+        pressure_unit: "kPa".to_owned(),
         expected: (0..=95)
             .map(kpa)
             .map(|p| Expected {

@@ -11,6 +11,7 @@ use plotters::coord::types::RangedCoordf64;
 use plotters::element::{Circle, Cross, Polygon};
 use plotters::prelude::{Cartesian2d, ChartContext, LineSeries};
 use plotters_backend::DrawingBackend;
+use std::collections::HashSet;
 
 /// The plot as the drawing library knows it.
 pub(crate) type Plot<'a, B> = ChartContext<'a, B, Cartesian2d<RangedCoordf64, RangedCoordf64>>;
@@ -66,6 +67,16 @@ impl<B: DrawingBackend> Artist<'_, '_, '_, B> {
     }
 
     /// Points on the plane of the drawing, finite only.
+    /// One point of all that fall on the same pixel: more would not be seen.
+    fn distinct(&self, points: Vec<Point>) -> Vec<Point> {
+        let mut taken = HashSet::new();
+        let pixel = |point: Point| {
+            let (x, y) = place(self.plot, point);
+            (x.round() as i64, y.round() as i64)
+        };
+        points.into_iter().filter(|point| taken.insert(pixel(*point))).collect()
+    }
+
     fn projected(&self, points: &[Point]) -> Vec<Point> {
         let placed = points.iter().map(|point| self.plane.project(*point));
         placed.filter(|point| point.0.is_finite() && point.1.is_finite()).collect()
@@ -132,9 +143,9 @@ impl<B: DrawingBackend> Artist<'_, '_, '_, B> {
 
     fn dots(&mut self, look: &Look, points: &[Point], dot: Dot) -> Result<(), DrawError> {
         let window = self.plane.window();
-        let thinned = series::thin(points, self.columns(), None).concat();
-        let thinned = self.projected(&thinned);
-        let (seen, outside): (Vec<_>, Vec<_>) = thinned.into_iter().partition(|p| window.holds(*p));
+        let projected = self.distinct(self.projected(points));
+        let (seen, outside): (Vec<_>, Vec<_>) =
+            projected.into_iter().partition(|p| window.holds(*p));
         // Bolder with the lines, but less, so that neighbours stay apart.
         let size = super::canvas::step(look.weight_px * self.sheet.theme.line_factor.sqrt());
         match dot {

@@ -16,9 +16,11 @@ pub struct FillLine {
     pub zone: TimeZone,
     /// Ends of the time axis; `None` takes in everything.
     pub span_s: Option<(i64, i64)>,
-    /// Planned level above the tank floor, m.
+    /// Unit of the levels.
+    pub unit: String,
+    /// Planned level above the tank floor.
     pub plan: Vec<(i64, f64)>,
-    /// Measured level above the tank floor, m; not finite where it is unknown.
+    /// Measured level above the tank floor; not finite where it is unknown.
     pub actual: Vec<(i64, f64)>,
     /// Longest time between two measured levels that are joined, s.
     pub max_gap_s: Option<i64>,
@@ -51,9 +53,7 @@ impl FillLine {
         let actual = Series {
             look: Look {
                 class: "actual",
-                label: self
-                    .last()
-                    .map_or(String::new(), |(_, level)| format!("{} m", number(level, 2))),
+                label: self.last().map_or(String::new(), |(_, level)| self.value(level)),
                 token: Token::Water,
                 weight_px: 2.4,
                 dash: Dash::Solid,
@@ -73,7 +73,7 @@ impl FillLine {
             },
             y: Axis {
                 label: "liquid level above floor".to_owned(),
-                unit: "m".to_owned(),
+                unit: self.unit.clone(),
                 include: vec![0.0],
                 ..Axis::default()
             },
@@ -86,15 +86,19 @@ impl FillLine {
         }
     }
 
+    fn value(&self, level: f64) -> String {
+        format!("{} {}", number(level, 2), self.unit)
+    }
+
     fn last(&self) -> Option<(i64, f64)> {
         self.actual.iter().rev().find(|(_, level)| level.is_finite()).copied()
     }
 
     fn description(&self) -> String {
         let now = match self.last() {
-            Some((time_s, level_m)) => format!(
-                "Last measured level {} m at {}.",
-                number(level_m, 2),
+            Some((time_s, level)) => format!(
+                "Last measured level {} at {}.",
+                self.value(level),
                 stamp(time_s, &self.zone)
             ),
             None => "No measured level.".to_owned(),

@@ -14,7 +14,7 @@ use jiff::tz::TimeZone;
 /// What was expected at one place on the horizontal axis.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Expected<X> {
-    /// Seconds of Unix time, or the applied pressure, kPa.
+    /// Seconds of Unix time, or the applied pressure.
     pub x: X,
     /// Lower edge of the likely band.
     pub low: f64,
@@ -27,7 +27,7 @@ pub struct Expected<X> {
 /// One reading.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Reading<X> {
-    /// Seconds of Unix time, or the applied pressure, kPa.
+    /// Seconds of Unix time, or the applied pressure.
     pub x: X,
     /// Value in the unit of the chart; not finite where the reading is missing.
     pub value: f64,
@@ -138,6 +138,8 @@ pub struct PressureChart {
     /// Heading: the point and its kind.
     pub title: String,
     pub quantity: Quantity,
+    /// Unit of the applied pressure.
+    pub pressure_unit: String,
     pub expected: Vec<Expected<f64>>,
     pub readings: Vec<Reading<f64>>,
     pub limits: Vec<Limit<f64>>,
@@ -186,7 +188,9 @@ impl PressureChart {
     /// As a chart.
     pub fn chart(&self) -> Chart {
         let last = last_good(&self.readings);
-        let when = last.map(|reading| format!(" at {} kPa applied pressure", number(reading.x, 1)));
+        let unit = &self.pressure_unit;
+        let when =
+            last.map(|reading| format!(" at {} {unit} applied pressure", number(reading.x, 1)));
         Chart {
             title: self.title.clone(),
             description: format!(
@@ -194,11 +198,7 @@ impl PressureChart {
                 self.quantity.capitalized(),
                 state(last, &self.quantity, self.mark, &when.unwrap_or_default())
             ),
-            x: Axis {
-                label: "applied pressure".to_owned(),
-                unit: "kPa".to_owned(),
-                ..Axis::default()
-            },
+            x: Axis { label: "applied pressure".to_owned(), unit: unit.clone(), ..Axis::default() },
             y: self.quantity.axis(),
             series: series(&self.expected, &self.readings, &self.limits),
             highlight: last.map(|reading| picked(&reading, &self.quantity, self.mark)),

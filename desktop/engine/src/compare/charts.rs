@@ -131,20 +131,18 @@ pub fn against_time(
 /// Step of applied pressure between points of a curve over it, kPa.
 const PRESSURE_STEP_KPA: f64 = 0.5;
 
-/// Places in a list of pressures at which the load is higher than ever before: a curve over them
-/// has one value for each pressure, that of the first loading, and shows the limits of a rise.
-fn first_loading(pressures: impl Iterator<Item = Option<f64>>) -> Vec<usize> {
+/// Those of a run at which the load is higher than ever before: a curve over them has one value for
+/// each pressure, that of the first loading, and shows the limits of a rise.
+fn first_loading<T>(along: impl Iterator<Item = T>, pressure_kpa: impl Fn(&T) -> f64) -> Vec<T> {
     let mut reached_kpa = f64::NEG_INFINITY;
-    let mut places = Vec::new();
-    for (place, pressure) in pressures.enumerate() {
-        if let Some(pressure) = pressure
-            && pressure >= reached_kpa + PRESSURE_STEP_KPA
-        {
-            reached_kpa = pressure;
-            places.push(place);
+    let further = along.filter(|one| {
+        let further = pressure_kpa(one) >= reached_kpa + PRESSURE_STEP_KPA;
+        if further {
+            reached_kpa = pressure_kpa(one);
         }
-    }
-    places
+        further
+    });
+    further.collect()
 }
 
 /// One instrument against the applied pressure: all readings, expected band and limits of the
@@ -153,11 +151,7 @@ fn first_loading(pressures: impl Iterator<Item = Option<f64>>) -> Vec<usize> {
 pub fn against_pressure(timeline: &Timeline) -> PressureChart {
     let scale = timeline.scale();
     let loaded = || timeline.rows.iter().filter_map(|row| Some((row, row.applied_pressure_kpa?)));
-    let first: Vec<(&Row, f64)> = {
-        let rows: Vec<(&Row, f64)> = loaded().filter(|(row, _)| row.expected.is_some()).collect();
-        first_loading(rows.iter().map(|row| Some(row.1))).into_iter().map(|at| rows[at]).collect()
-    };
-    let expected = first.into_iter().filter_map(|(row, x)| {
+    let expected = loaded().filter_map(|(row, x)| {
         row.expected.map(|band| chart::Expected {
             x,
             low: band.low * scale,
@@ -165,6 +159,7 @@ pub fn against_pressure(timeline: &Timeline) -> PressureChart {
             high: band.high * scale,
         })
     });
+    let expected = first_loading(expected, |one| one.x);
     let readings = loaded().map(|(row, x)| chart::Reading {
         x,
         value: row.value.map_or(f64::NAN, |value| value * scale),
@@ -173,12 +168,14 @@ pub fn against_pressure(timeline: &Timeline) -> PressureChart {
     let limits = timeline.limit_curves().into_iter().filter_map(|curve| {
         let points =
             curve.points.iter().filter_map(|(_, load, value)| Some(((*load)?, value * scale)));
-        Some(chart::Limit { kind: limit_kind(curve.trigger)?, points: points.collect() })
+        let points = first_loading(points, |point| point.0);
+        Some(chart::Limit { kind: limit_kind(curve.trigger)?, points })
     });
     PressureChart {
         title: title(timeline),
         quantity: quantity_of(timeline),
-        expected: expected.collect(),
+        pressure_unit: "kPa".to_owned(),
+        expected,
         readings: readings.collect(),
         limits: limits.collect(),
         mark: mark_of(timeline, timeline.rows.last()),
@@ -201,6 +198,7 @@ pub fn fill_line(site: &SiteFile, comparison: &Comparison, zone: &TimeZone) -> F
     let tank = site.tanks.first().map_or("", |tank| tank.name.as_str());
     FillLine {
         title: format!("{tank} fill line"),
+        unit: "m".to_owned(),
         zone: zone.clone(),
         span_s: None,
         plan: plan.collect(),

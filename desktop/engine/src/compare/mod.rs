@@ -20,6 +20,7 @@ pub mod words;
 
 pub use level::{LoadInUse, LoadLine};
 pub use limits::{LimitsError, limits_of};
+pub use reduce::{reduction_at, uncorrected};
 pub use timeline::{FaultSpan, LimitCurve, Row, Timeline, TriggerChange};
 
 use crate::expect::{ExpectError, LoadHistory, LoadPoint, Model, expect};

@@ -5,7 +5,7 @@ use crate::expect::scale_of;
 use crate::import::{Imported, Series};
 use crate::site::{Calibration, Instrument, Signal};
 use brimstead_core::instrument::reduce::{
-    VibratingWire, WireCalibration, WireConversion, WireInput,
+    VibratingWire, WireCalibration, WireConversion, WireInput, WirePressure,
 };
 use brimstead_core::instrument::{Doubt, Reading};
 
@@ -52,7 +52,22 @@ fn digits(
     series: &Series,
     imported: &Imported,
 ) -> Vec<Reduced> {
-    let gauge = VibratingWire::new(&WireCalibration {
+    let gauge = VibratingWire::new(&wire(calibration));
+    let each = series.points.iter();
+    each.map(|point| {
+        let input = wire_input(instrument, imported, point.time_s, point.value);
+        let reduced = gauge.and_then(|gauge| gauge.pressure(&input));
+        let reading = match reduced {
+            Ok(pressure) => Reading::new(point.time_s, pressure.pressure_kpa),
+            Err(refused) => Reading::absent(point.time_s, refused.doubt()),
+        };
+        Reduced { reading, raw: Some(point.value) }
+    })
+    .collect()
+}
+
+fn wire(calibration: &Calibration) -> WireCalibration {
+    WireCalibration {
         digits_zero: calibration.digits_zero,
         conversion: WireConversion::Linear {
             factor_kpa_per_digit: calibration.factor_kpa_per_digit,
@@ -62,24 +77,57 @@ fn digits(
         barometer_zero_kpa: calibration.barometer_zero_kpa,
         apply_temperature: calibration.apply_temperature,
         apply_barometer: calibration.apply_barometer,
-    });
+    }
+}
+
+fn wire_input(instrument: &Instrument, imported: &Imported, time_s: i64, digits: f64) -> WireInput {
     let temperature = imported.channel(&format!("temperature:{}", instrument.id));
-    let barometer = imported.channel("barometer");
+    WireInput {
+        digits,
+        temperature_c: companion(temperature, time_s),
+        barometer_kpa: companion(imported.channel("barometer"), time_s),
+    }
+}
+
+/// The digits of an instrument with its calibration and its readings in digits.
+fn in_digits<'a>(
+    instrument: &'a Instrument,
+    imported: &'a Imported,
+) -> Option<(&'a Calibration, &'a Series)> {
+    let series = imported.instrument(&instrument.id)?;
+    let calibration = instrument.calibration.as_ref()?;
+    (series.signal == Signal::Digits).then_some((calibration, series))
+}
+
+/// What a gauge read in digits gives before its corrections, in the core's unit; nothing for an
+/// instrument that is not read in digits.
+#[must_use]
+pub fn uncorrected(instrument: &Instrument, imported: &Imported) -> Vec<(i64, f64)> {
+    let Some((calibration, series)) = in_digits(instrument, imported) else { return Vec::new() };
+    let bare =
+        WireCalibration { apply_temperature: false, apply_barometer: false, ..wire(calibration) };
+    let Ok(gauge) = VibratingWire::new(&bare) else { return Vec::new() };
+    let input = |digits| WireInput { digits, temperature_c: None, barometer_kpa: None };
     let each = series.points.iter();
-    each.map(|point| {
-        let input = WireInput {
-            digits: point.value,
-            temperature_c: companion(temperature, point.time_s),
-            barometer_kpa: companion(barometer, point.time_s),
-        };
-        let reduced = gauge.and_then(|gauge| gauge.pressure(&input));
-        let reading = match reduced {
-            Ok(pressure) => Reading::new(point.time_s, pressure.pressure_kpa),
-            Err(refused) => Reading::absent(point.time_s, refused.doubt()),
-        };
-        Reduced { reading, raw: Some(point.value) }
+    each.filter_map(|point| {
+        let pressure = gauge.pressure(&input(point.value)).ok()?;
+        Some((point.time_s, pressure.pressure_kpa))
     })
     .collect()
+}
+
+/// How the pressure of a gauge read in digits came about at an instant at which it was read; none
+/// for an instrument that is not read in digits, or when a correction lacks its input.
+#[must_use]
+pub fn reduction_at(
+    instrument: &Instrument,
+    imported: &Imported,
+    time_s: i64,
+) -> Option<WirePressure> {
+    let (calibration, series) = in_digits(instrument, imported)?;
+    let place = series.points.binary_search_by_key(&time_s, |point| point.time_s).ok()?;
+    let input = wire_input(instrument, imported, time_s, series.points[place].value);
+    VibratingWire::new(&wire(calibration)).ok()?.pressure(&input).ok()
 }
 
 /// The latest value of a second quantity at an instant, while it is fresh.

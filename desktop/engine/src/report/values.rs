@@ -122,6 +122,7 @@ mod tests {
         PressureChart {
             title: String::new(),
             quantity: Quantity { decimals: 1, ..Quantity::default() },
+            pressure_unit: "kPa".to_owned(),
             expected: [60.0, 80.0]
                 .map(|x| Expected { x, low: x * 0.4, likely: x * 0.5, high: x * 0.6 })
                 .to_vec(),

@@ -7,7 +7,6 @@ use ts_rs::TS;
 /// Unit system of everything shown and typed.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default, Serialize, Deserialize, TS)]
 #[serde(rename_all = "snake_case")]
-#[ts(export)]
 pub enum Units {
     /// m, mm, kPa, m3.
     #[default]
@@ -19,7 +18,6 @@ pub enum Units {
 /// Colours of charts.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default, Serialize, Deserialize, TS)]
 #[serde(rename_all = "snake_case")]
-#[ts(export)]
 pub enum Theme {
     /// Light ground.
     #[default]
@@ -33,7 +31,6 @@ pub enum Theme {
 /// Alarm level of a ground reading.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize, TS)]
 #[serde(rename_all = "snake_case")]
-#[ts(export)]
 pub enum TriggerView {
     /// Inside the expected band.
     Normal,
@@ -47,7 +44,6 @@ pub enum TriggerView {
 
 /// A number with its unit and its text.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct Quantity {
     /// In the unit shown.
     pub value: f64,
@@ -59,7 +55,6 @@ pub struct Quantity {
 
 /// What is open.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct Opened {
     /// Path of the store, or of the demo.
     pub path: String,
@@ -87,7 +82,6 @@ pub struct Opened {
 
 /// The moment strip and everything that hangs on the cursor.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct MomentView {
     /// The cursor.
     pub time_ms: f64,
@@ -112,9 +106,9 @@ pub struct MomentView {
     /// Shortest time to a limit at the present rates ("1 h 40 min to Stop at PE1"), none when
     /// nothing moves towards one.
     pub to_limit: Option<String>,
-    /// Time to lower the liquid by 1 m at the stated pump rate.
+    /// Time to lower the liquid at the stated pump rate ("7 h 33 min to lower 1 m").
     pub to_lower: Option<String>,
-    /// Instruments at Normal, Watch, Review, Stop.
+    /// Instruments at Normal (judged on a good reading), Watch, Review, Stop.
     pub counts: [u32; 4],
     /// Instruments with an equipment fault.
     pub faults: u32,
@@ -132,7 +126,6 @@ pub struct MomentView {
 
 /// One instrument at the cursor.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct InstrumentNow {
     /// Its id.
     pub id: String,
@@ -164,7 +157,7 @@ pub struct InstrumentNow {
     pub band_position: Option<f64>,
     /// Margin to the next limit, in words ("4.4 kPa to Stop").
     pub margin: Option<String>,
-    /// Age of the reading in words.
+    /// Age of the reading in words ("8 min").
     pub age: String,
     /// Why it does not support the next rise.
     pub objection: Option<String>,
@@ -179,7 +172,6 @@ pub struct InstrumentNow {
 /// The fixed drawing of the section, in metres: x along the section from the tank's axis, depth
 /// positive down.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct SectionView {
     /// Along which line ("west to east through T-7").
     pub title: String,
@@ -197,7 +189,6 @@ pub struct SectionView {
 
 /// A layer of the section.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct LayerView {
     /// Name.
     pub name: String,
@@ -211,7 +202,6 @@ pub struct LayerView {
 
 /// A tank of the section.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct TankView {
     /// Name.
     pub name: String,
@@ -232,7 +222,6 @@ pub struct TankView {
 /// What contours show.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize, TS)]
 #[serde(rename_all = "snake_case")]
-#[ts(export)]
 pub enum Field {
     /// Vertical stress increment.
     SigmaZ,
@@ -250,17 +239,17 @@ pub enum Field {
 
 /// Contours at a moment, in metres of the section.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct ContoursView {
     /// Unit of the values.
     pub unit: String,
     /// Each line: its value as text, and its points [x_m, depth_m].
     pub lines: Vec<ContourLine>,
+    /// What they are and under which assumption, in words.
+    pub note: String,
 }
 
 /// One contour line.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct ContourLine {
     /// Value in the unit shown.
     pub label: String,
@@ -270,23 +259,59 @@ pub struct ContourLine {
     pub points: Vec<[f64; 2]>,
 }
 
+/// A picture as the page has room for it.
+#[derive(Debug, Clone, Copy, PartialEq, Serialize, Deserialize, TS)]
+pub struct Picture {
+    /// Width, px.
+    pub width: f64,
+    /// Height, px.
+    pub height: f64,
+    /// Colours.
+    pub theme: Theme,
+}
+
+/// What runs along the horizontal axis of the chart of a reading.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize, TS)]
+#[serde(rename_all = "snake_case")]
+pub enum Against {
+    /// Time.
+    Time,
+    /// Applied pressure.
+    Pressure,
+}
+
+/// What may be left out of the chart of a reading.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize, Deserialize, TS)]
+#[serde(rename_all = "snake_case")]
+pub enum Hidden {
+    /// The expected band.
+    Band,
+    /// The likely value.
+    Expected,
+    /// Limits.
+    Limits,
+    /// Readings before their corrections.
+    Raw,
+}
+
 /// A chart ready to be put on the page.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct ChartView {
     /// SVG made by the engine.
     pub svg: String,
-    /// Pixels and values of the ends of the x axis: px0, px1, v0, v1.
+    /// Pixels and values of the ends of the x axis: px0, px1, v0, v1. Values of a time axis are
+    /// seconds of Unix time.
     pub x: [f64; 4],
     /// The same of the y axis.
     pub y: [f64; 4],
     /// Points for the pointer, thinned like the drawing.
     pub hover: Vec<HoverPoint>,
+    /// Changes of a trigger, to jump to, by time.
+    pub events: Vec<HoverPoint>,
 }
 
 /// What the pointer says near a point of a chart.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct HoverPoint {
     /// Where on the chart, px.
     pub px: [f64; 2],
@@ -298,7 +323,6 @@ pub struct HoverPoint {
 
 /// One entry of the life story or the log.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct EntryView {
     /// When, in the site's zone.
     pub time_text: String,
@@ -312,7 +336,6 @@ pub struct EntryView {
 
 /// The reading view of one instrument at the cursor.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct ReadingView {
     /// The instrument at the cursor.
     pub now: InstrumentNow,
@@ -334,7 +357,6 @@ pub struct ReadingView {
 
 /// One line of a hand-check sheet.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct WorkingLine {
     /// What is computed.
     pub name: String,
@@ -352,7 +374,6 @@ pub struct WorkingLine {
 
 /// A hand-check sheet.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct WorkingView {
     /// What it works out.
     pub title: String,
@@ -364,7 +385,6 @@ pub struct WorkingView {
 
 /// An equipment fault, never mixed with ground triggers.
 #[derive(Debug, Clone, PartialEq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct FaultView {
     /// The instrument.
     pub id: String,
@@ -388,7 +408,6 @@ pub struct FaultView {
 
 /// How anything fails, for the window.
 #[derive(Debug, Clone, PartialEq, Eq, Serialize, Deserialize, TS)]
-#[ts(export)]
 pub struct Failure {
     /// A word the front end may act on.
     pub code: String,
