@@ -507,6 +507,24 @@ fn edges_and_strength() {
         batch.expect("/circle/z_m", -number(&row, "centre_height_m"), 2e-4);
         batch.expect("/circle/radius_m", number(&row, "R_m"), 2e-4);
     }
+    // Known to 1e-4 (see the core's `bearing`); rows that did not converge are empty.
+    for row in table("time/t06_circular_bearing.csv") {
+        for base in ["smooth", "rough"] {
+            let Ok(factor) = row[&format!("Nc_{base}_extrapolated")].parse::<f64>() else {
+                continue;
+            };
+            let (diameter, strength) = (32.0, 15.0);
+            batch.ask(
+                "circular_bearing",
+                &json!({
+                    "diameter_m": diameter, "undrained_strength_kpa": strength, "base": base,
+                    "gradient_kpa_per_m": number(&row, "kB_over_su0") * strength / diameter,
+                }),
+            );
+            batch.expect("/factor", factor, 1e-4 * factor);
+            batch.expect("/ultimate_kpa", strength * factor, 1e-4 * strength * factor);
+        }
+    }
     for row in table("time/t06_shansep.csv") {
         batch.ask(
             "strength_gain",

@@ -133,6 +133,20 @@ fn values_that_cannot_be_are_laid_at_their_key() {
             "at the base of the layer",
         ),
         (
+            "circular_bearing",
+            r#"{"diameter_m":30,"undrained_strength_kpa":20,"gradient_kpa_per_m":-1,"base":"rough"}"#
+                .to_owned(),
+            "gradient_kpa_per_m",
+            "search a slip circle",
+        ),
+        (
+            "circular_bearing",
+            r#"{"diameter_m":30,"undrained_strength_kpa":20,"gradient_kpa_per_m":1,"base":"stiff"}"#
+                .to_owned(),
+            "base",
+            "`rough` or `smooth`",
+        ),
+        (
             "strength_gain",
             r#"{"effective_stress_kpa":-1,"preconsolidation_kpa":80,"ratio":0.22,
             "exponent":0.8}"#
@@ -252,7 +266,7 @@ fn mistakes_of_form_are_laid_at_their_path() {
             "radius_m",
             "given twice",
         ),
-        ("disc_stress", "[1,2]", "", "object"),
+        ("disc_stress", "[5,90,0.3,[[0,1]]]", "", "object"),
         ("schmertmann_1970", "{}", "quantity", "not built or not known"),
     ]);
 }

@@ -100,6 +100,7 @@ const QUANTITIES: &[(&str, request::Handler)] = &[
     ("drain_consolidation", consolidation::drain_consolidation),
     ("primary_settlement", settlement::primary),
     ("schmertmann", settlement::schmertmann),
+    ("circular_bearing", stability::circular_bearing),
     ("edge_stability", stability::edge_stability),
     ("strength_gain", stability::strength_gain),
     ("perimeter_fit", shell::perimeter_fit),

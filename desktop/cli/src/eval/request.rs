@@ -85,6 +85,10 @@ impl<'a> Request<'a> {
 /// # Errors
 /// [`Refusal`] with the path of the first problem.
 pub fn read<T: DeserializeOwned>(input: &RawValue) -> Result<T, Refusal> {
+    // A list in the order of the keys would be taken for them.
+    if !input.get().starts_with('{') {
+        return Err(Refusal::new("", "the input is no object; give {\"key\": value, ...}"));
+    }
     let mut reader = serde_json::Deserializer::from_str(input.get());
     serde_path_to_error::deserialize(&mut reader).map_err(|error| {
         let path = error.path().to_string();

@@ -2,6 +2,7 @@
 
 use super::request::{Refusal, located, read, within};
 use super::trail::Trail;
+use brimstead_core::stability::bearing::{Roughness, STRENGTH_GROWTH, circular_bearing_with};
 use brimstead_core::stability::edge::{Edge, SMALLEST_WIDTH, edge_stability_with};
 use brimstead_core::stability::strength::{
     EFFECTIVE_STRESS, PRECONSOLIDATION, SLICE_THICKNESS, STRENGTH_EXPONENT, STRENGTH_GRADIENT,
@@ -11,6 +12,39 @@ use brimstead_core::stability::{DIAMETER, PRESSURE, StabilityError};
 use serde::Deserialize;
 use serde_json::value::RawValue;
 use serde_json::{Value, json};
+
+#[derive(Deserialize)]
+#[serde(deny_unknown_fields)]
+struct BearingInput {
+    diameter_m: f64,
+    undrained_strength_kpa: f64,
+    gradient_kpa_per_m: f64,
+    base: GivenBase,
+}
+
+#[derive(Deserialize, Clone, Copy)]
+#[serde(rename_all = "snake_case")]
+enum GivenBase {
+    Rough,
+    Smooth,
+}
+
+pub fn circular_bearing(input: &RawValue, trail: &mut Trail) -> Result<Value, Refusal> {
+    let given: BearingInput = read(input)?;
+    let roughness = match given.base {
+        GivenBase::Rough => Roughness::Rough,
+        GivenBase::Smooth => Roughness::Smooth,
+    };
+    let found = circular_bearing_with(
+        within("diameter_m", given.diameter_m, &DIAMETER)?,
+        within("undrained_strength_kpa", given.undrained_strength_kpa, &UNDRAINED_STRENGTH)?,
+        within("gradient_kpa_per_m", given.gradient_kpa_per_m, &STRENGTH_GROWTH)?,
+        roughness,
+        trail,
+    )
+    .map_err(|error| Refusal::at("undrained_strength_kpa", error))?;
+    Ok(json!({"ultimate_kpa": found.ultimate_kpa, "factor": found.factor}))
+}
 
 #[derive(Deserialize)]
 #[serde(deny_unknown_fields)]
