@@ -22,10 +22,9 @@ for run in run-good run-bad; do
   # A status other than 0 may tell of the readings; whether a report came is what counts here.
   status=0
   "$program" compare data-demo/site.json --readings data-demo/"$run"/* --out "$out" || status=$?
-  written=$(find "$PWD/$out" -type f | sort)
-  if [ -z "$written" ]; then
+  if [ ! -s "$out/report.html" ]; then
     echo "no report was written (exit status $status)" >&2
     exit 1
   fi
-  printf 'Exit status %d. Written:\n%s\n' "$status" "$written"
+  echo "Exit status $status (what it tells: $program compare --help)"
 done
