@@ -1,6 +1,7 @@
 //! The invented tank, ground, drains, gauge and rounds.
 
 use super::rounds::Rounds;
+use super::scan::Guard;
 use brimstead_core::config::Name;
 use brimstead_core::consolidation::{DrainPattern, Drains};
 use brimstead_core::expectation::{DrainZone, SiteModel};
@@ -16,6 +17,7 @@ pub struct Inputs {
     pub(super) site: SiteModel,
     pub(super) gauge: WireCalibration,
     pub(super) rounds: Rounds,
+    pub(super) guard: Guard,
 }
 
 impl Inputs {
@@ -25,7 +27,12 @@ impl Inputs {
     // Its copies must not stay on the stack while the numbers are computed.
     #[inline(never)]
     pub fn invented() -> Option<Self> {
-        Some(Self { site: site()?, gauge: GAUGE, rounds: Rounds::invented() })
+        Some(Self {
+            site: site()?,
+            gauge: GAUGE,
+            rounds: Rounds::invented(),
+            guard: Guard::invented()?,
+        })
     }
 }
 

@@ -5,6 +5,7 @@
 
 mod inputs;
 mod rounds;
+mod scan;
 
 pub use inputs::Inputs;
 
@@ -64,7 +65,8 @@ pub fn compute(inputs: &Inputs, mut each: impl FnMut(&'static str, f64)) -> Opti
     pore_pressures(inputs, &mut each)?;
     gauge_pressures(inputs, &mut each)?;
     expected_readings(&inputs.site, &mut each)?;
-    inputs.rounds.compute(&mut each)
+    inputs.rounds.compute(&mut each)?;
+    scan::judgements(&inputs.guard, &mut each)
 }
 
 // These parts stay functions of their own: joined, they would all hold their stack at once.
@@ -222,6 +224,7 @@ mod tests {
             "edge",
             "shell",
             "forecast",
+            "trigger",
         ] {
             assert!(text.contains(room), "nothing of {room} is compared");
         }
