@@ -189,9 +189,11 @@ fn expected_readings(site: &SiteModel, each: &mut impl FnMut(&'static str, f64))
 /// # Errors
 /// [`fmt::Error`] when the sink refuses or when the core refuses an input, which it must not.
 pub fn write_bits(sink: &mut impl fmt::Write) -> fmt::Result {
-    let inputs = Inputs::invented().ok_or(fmt::Error)?;
+    // Borrowed where they were made, as the column above.
+    let inputs = Inputs::invented();
+    let inputs = inputs.as_ref().ok_or(fmt::Error)?;
     let mut written = Ok(());
-    let computed = compute(&inputs, |name, value| {
+    let computed = compute(inputs, |name, value| {
         written = written.and_then(|()| writeln!(sink, "{name} {:016x}", value.to_bits()));
     });
     written.and(computed.ok_or(fmt::Error))
