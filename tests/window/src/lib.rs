@@ -1,0 +1,1 @@
+//! Nothing of its own: the checks stand in `tests/`.
