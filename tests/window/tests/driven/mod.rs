@@ -38,9 +38,9 @@ impl Driven {
             .stderr(Stdio::null())
             .spawn()?;
         let mut capabilities = Capabilities::new();
-        capabilities.set("browserName".to_owned(), "wry".into());
+        capabilities.set("browserName", "wry")?;
         let options = serde_json::json!({"application": application().canonicalize()?});
-        capabilities.set("tauri:options".to_owned(), options);
+        capabilities.set("tauri:options", options)?;
         let mut last = None;
         for _ in 0..60 {
             match WebDriver::new(&format!("http://127.0.0.1:{PORT}"), capabilities.clone()).await {
