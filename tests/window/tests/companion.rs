@@ -11,9 +11,8 @@ use driven::{Driven, Outcome};
 use thirtyfour::prelude::*;
 
 const SIZES: [(u32, u32); 2] = [(1280, 800), (1920, 1080)];
-const VIEWS: [&str; 9] = [
-    "section", "reading", "working", "instruments", "faults", "limits", "import", "log", "site",
-];
+const VIEWS: [&str; 9] =
+    ["section", "reading", "working", "instruments", "faults", "limits", "import", "log", "site"];
 
 /// One window for all: starting it is the slow part.
 #[tokio::test(flavor = "current_thread")]

@@ -22,7 +22,8 @@ pub fn root() -> PathBuf {
 
 /// Where the built window is.
 fn application() -> PathBuf {
-    let target = std::env::var_os("CARGO_TARGET_DIR").map_or_else(|| root().join("target"), PathBuf::from);
+    let target =
+        std::env::var_os("CARGO_TARGET_DIR").map_or_else(|| root().join("target"), PathBuf::from);
     target.join("debug/brimstead-app")
 }
 

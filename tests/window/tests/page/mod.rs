@@ -41,10 +41,7 @@ pub async fn wait_for(driver: &WebDriver, words: &str) -> Outcome {
 pub async fn go(driver: &WebDriver, view: &str) -> Outcome {
     let link = driver.query(By::Css(format!("a[href='#/{view}']"))).first().await?;
     link.click().await?;
-    until(driver, view, async |_| {
-        Ok(link.attr("aria-current").await?.is_some())
-    })
-    .await?;
+    until(driver, view, async |_| Ok(link.attr("aria-current").await?.is_some())).await?;
     // Pictures are asked for once the view knows its size.
     tokio::time::sleep(Duration::from_millis(700)).await;
     Ok(())
@@ -103,7 +100,8 @@ pub async fn cut_texts(driver: &WebDriver) -> Found<Vec<String>> {
 
 /// Serious and critical findings of axe in the window as it stands.
 pub async fn axe(driver: &WebDriver) -> Found<Vec<String>> {
-    let source = std::fs::read_to_string(root().join("desktop/ui/node_modules/axe-core/axe.min.js"))?;
+    let source =
+        std::fs::read_to_string(root().join("desktop/ui/node_modules/axe-core/axe.min.js"))?;
     driver.execute(&source, Vec::new()).await?;
     let found = driver
         .execute_async(
