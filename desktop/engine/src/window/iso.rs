@@ -45,7 +45,7 @@ pub(super) fn levels(grid: &Grid) -> (Vec<f64>, usize) {
         return (Vec::new(), 0);
     }
     let rough = largest / MOST_LEVELS;
-    let power = 10_f64.powf(rough.log10().floor());
+    let power = 10_f64.powi(rough.log10().floor() as i32);
     let step = [1.0, 2.0, 5.0, 10.0].map(|times| times * power);
     let step = step.into_iter().find(|step| *step >= rough).unwrap_or(10.0 * power);
     let (low, high) =
