@@ -165,7 +165,9 @@ fn desktop_does_no_engineering_arithmetic() {
     for file in sources() {
         let code = file.has_extension(&["rs", "ts", "svelte"]);
         let other = MAY_USE_CURVES.iter().any(|folder| file.path.starts_with(folder));
-        if !code || other || !file.path.starts_with("desktop/") {
+        // A test may work a number out by hand to hold it against the core's.
+        let test = file.path.contains("/tests/");
+        if !code || other || test || !file.path.starts_with("desktop/") {
             continue;
         }
         let mut arithmetic = file.without_unit_tests().to_owned();
