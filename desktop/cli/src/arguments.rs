@@ -32,7 +32,7 @@ pub enum Command {
 #[derive(Args)]
 #[command(after_help = "\
 Example:
-  brimstead compare data-demo/site.json --readings data-demo/run-bad/* --out report
+  brimstead compare data-demo/site.json --readings data-demo/run-bad/* --out target/report
 
 Writes report.html, comparison.json and the charts as SVG and PNG into the folder given by --out.
 
@@ -58,7 +58,7 @@ pub struct CompareArguments {
 #[derive(Args)]
 #[command(after_help = "\
 Example:
-  brimstead predict data-demo/site.json --out prediction
+  brimstead predict data-demo/site.json --out target/prediction
 
 For the start and end of each rise and the end of each hold of the plan: the likely reading and
 the band of every instrument.")]
