@@ -1,6 +1,6 @@
 //! Units that files of readings are written in, and their exact conversion.
 
-use crate::site::reader::choices;
+use crate::site::reader::{Choice, choices};
 
 choices! {
     /// A unit of a column.
@@ -95,6 +95,17 @@ const fn scale(multiply: f64, divide: f64) -> Scale {
 }
 
 impl UnitName {
+    /// All of them.
+    pub fn all() -> impl Iterator<Item = Self> {
+        Self::ALL.iter().map(|(unit, _)| *unit)
+    }
+
+    /// The unit of a name.
+    #[must_use]
+    pub fn named(name: &str) -> Option<Self> {
+        Self::all().find(|unit| unit.word() == name)
+    }
+
     /// What it measures.
     #[must_use]
     pub fn dimension(self) -> Dimension {

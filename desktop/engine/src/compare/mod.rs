@@ -100,6 +100,22 @@ pub fn compare(site: &SiteFile, imported: &Imported) -> Result<Comparison, Compa
     Ok(Comparison { model, load, history, timelines, last_s })
 }
 
+/// A site of which nothing can be compared yet: its model and its instruments, none of them read.
+/// It ends at the baseline, so that all that follows is still to come.
+///
+/// # Errors
+/// When the site cannot be calculated or its limits are refused.
+pub fn nothing_compared(site: &SiteFile) -> Result<Comparison, CompareError> {
+    let timelines = site.instruments.iter().map(|given| Timeline::new(site, given, vec![], vec![]));
+    Ok(Comparison {
+        model: Model::new(site)?,
+        load: LoadLine::default(),
+        history: LoadHistory::default(),
+        timelines: timelines.collect::<Result<_, _>>()?,
+        last_s: site.baseline.time_s,
+    })
+}
+
 fn times_of(readings: &[Reduced]) -> Vec<i64> {
     readings.iter().map(|one| one.reading.time_s).collect()
 }

@@ -31,7 +31,7 @@ use clock::Clock;
 use rows::RowReader;
 use serde::Serialize;
 use std::collections::BTreeMap;
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 use thiserror::Error;
 
 /// Largest file that is read, bytes.
@@ -119,19 +119,25 @@ pub fn read_files(site: &SiteFile, paths: &[PathBuf]) -> Result<Imported, Import
     }
     let mut import = Import::new(site);
     for path in paths {
-        let file = path.display().to_string();
-        let unreadable = |reason| ImportError::Unreadable { file: file.clone(), reason };
-        let bytes = std::fs::metadata(path).map_err(unreadable)?.len();
-        if bytes > LARGEST_FILE {
-            return Err(ImportError::TooLarge { file, bytes });
-        }
-        let content = std::fs::read(path).map_err(unreadable)?;
-        let name = path
-            .file_name()
-            .map_or_else(|| file.clone(), |name| name.to_string_lossy().into_owned());
-        import.take(&name, &content);
+        let content = file_bytes(path)?;
+        let name = path.file_name().unwrap_or(path.as_os_str());
+        import.take(&name.to_string_lossy(), &content);
     }
     Ok(import.finish())
+}
+
+/// The content of a file of readings.
+///
+/// # Errors
+/// When it cannot be opened or is too large.
+pub fn file_bytes(path: &Path) -> Result<Vec<u8>, ImportError> {
+    let file = path.display().to_string();
+    let unreadable = |reason| ImportError::Unreadable { file: file.clone(), reason };
+    let bytes = std::fs::metadata(path).map_err(unreadable)?.len();
+    if bytes > LARGEST_FILE {
+        return Err(ImportError::TooLarge { file, bytes });
+    }
+    std::fs::read(path).map_err(unreadable)
 }
 
 /// Reads files that are in memory already, as (name, bytes).
@@ -142,6 +148,20 @@ pub fn read_bytes(site: &SiteFile, files: &[(&str, &[u8])]) -> Imported {
         import.take(name, bytes);
     }
     import.finish()
+}
+
+/// How a file would be read: the first layout of the site that fits it, else a guess; whether it
+/// is a guess. None when it cannot be understood.
+#[must_use]
+pub fn layout_of(site: &SiteFile, name: &str, bytes: &[u8]) -> Option<(ReadingsLayout, bool)> {
+    for layout in layout::candidates(site, name) {
+        let decoded = text::decode(bytes, layout.encoding);
+        if layout::see(&decoded.text, layout).is_ok() {
+            return Some((layout.clone(), false));
+        }
+    }
+    let decoded = text::decode(bytes, None);
+    guess::layout(&decoded.text, site, name).ok().map(|guess| (guess.layout, true))
 }
 
 /// An import under way.

@@ -58,15 +58,15 @@ pub(super) fn steps_s(from_s: i64, to_s: i64, step_s: i64) -> Vec<i64> {
 
 /// The level as measured, then as planned, at even steps.
 pub(super) fn coarse_history(site: &SiteFile, measured: &LoadHistory, to_s: i64) -> LoadHistory {
-    let Some((first, last)) = measured.points().first().zip(measured.points().last()) else {
-        return LoadHistory::default();
+    let baseline_s = site.baseline.time_s;
+    let end = |point: Option<&LoadPoint>| point.map_or(baseline_s, |point| point.time_s);
+    let (first_s, last_s) = (end(measured.points().first()), end(measured.points().last()));
+    let level_m = |time_s: i64| match measured.level_at(time_s) {
+        Some(measured_m) if time_s <= last_s => measured_m,
+        _ => planned_level_m(site, time_s),
     };
-    let level_m = |time_s: i64| {
-        let measured_m = measured.level_at(time_s).unwrap_or_default();
-        if time_s > last.time_s { planned_level_m(site, time_s) } else { measured_m }
-    };
-    let mut times = steps_s(first.time_s, last.time_s, COARSE_S);
-    times.extend(steps_s(last.time_s, to_s, COARSE_S));
+    let mut times = steps_s(first_s, last_s, COARSE_S);
+    times.extend(steps_s(last_s, to_s, COARSE_S));
     let points =
         times.into_iter().map(|time_s| LoadPoint { time_s, liquid_level_m: level_m(time_s) });
     LoadHistory::new(points.collect())

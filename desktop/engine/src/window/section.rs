@@ -80,8 +80,7 @@ impl Session {
 }
 
 /// The section of a site.
-#[must_use]
-pub fn section_of(site: &SiteFile, units: Units) -> SectionView {
+pub(super) fn section_of(site: &SiteFile, units: Units) -> SectionView {
     let extent_m = extent_m(site);
     let mut top_m = 0.0;
     let layers = site.layers.iter().map(|layer| {

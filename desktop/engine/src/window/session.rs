@@ -4,10 +4,12 @@
 use super::ahead::Ahead;
 use super::contours::{Ground, Stress};
 use super::failure::WindowError;
+use super::records::Signature;
 use super::section::Place;
 use super::views::Opened;
 use crate::compare::words::{kind_word, place_words};
-use crate::compare::{Comparison, Timeline, compare};
+use crate::compare::{CompareError, Comparison, Timeline, compare, nothing_compared};
+use crate::expect::ExpectError;
 use crate::import::{Imported, read_bytes};
 use crate::report::CAUTIONS;
 use crate::site::{self, Instrument, SiteFile};
@@ -87,6 +89,8 @@ pub struct Session {
     pub(super) zone: TimeZone,
     pub(super) imported: Imported,
     pub(super) comparison: Comparison,
+    /// What keeps the readings from being compared.
+    note: Option<String>,
     pub(super) known: Vec<Known>,
     pub(super) ahead: OnceLock<Ahead>,
     pub(super) ground: OnceLock<Result<Ground, String>>,
@@ -147,6 +151,24 @@ impl Session {
         Self::over(Arc::new(Keeper { store: Mutex::new(store), origin }), now_s, progress)
     }
 
+    /// Makes a store for a site and opens it.
+    ///
+    /// # Errors
+    /// When the file is there already or cannot be written, and all problems of the site file.
+    pub fn new_store(
+        path: &Path,
+        text: &str,
+        signature: &Signature,
+        now_s: i64,
+        progress: Progress<'_>,
+    ) -> Result<Self, WindowError> {
+        site::parse(text, "site file")?;
+        let change = Change { who: &signature.who, at_s: now_s, why: &signature.why };
+        let store = SqliteStore::create(path, text, &change)?;
+        let origin = Origin::File(path.to_owned());
+        Self::over(Arc::new(Keeper { store: Mutex::new(store), origin }), now_s, progress)
+    }
+
     /// The same store again, after something in it changed.
     ///
     /// # Errors
@@ -179,7 +201,7 @@ impl Session {
             (site, imported)
         };
         progress.step("Comparing readings with what is expected", 0.4)?;
-        let comparison = compare(&site, &imported)?;
+        let (comparison, note) = compared(&site, &imported)?;
         progress.step("Drawing", 1.0)?;
         let zone = crate::time::zone(&site.site.time_zone).unwrap_or(TimeZone::UTC);
         let known = site.instruments.iter().map(|given| known(&site, given)).collect();
@@ -189,6 +211,7 @@ impl Session {
             zone,
             imported,
             comparison,
+            note,
             known,
             ahead: OnceLock::new(),
             ground: OnceLock::new(),
@@ -224,6 +247,7 @@ impl Session {
             last_ms: milliseconds(self.comparison.last_s),
             runs: RUNS.map(|(name, words)| (name.to_owned(), words.to_owned())).to_vec(),
             run,
+            note: self.note.clone(),
             cautions: CAUTIONS.map(str::to_owned).to_vec(),
         }
     }
@@ -259,6 +283,24 @@ impl Session {
 /// A store whose last user panicked is as good as before: each of its calls is one transaction.
 fn locked(store: &Mutex<SqliteStore>) -> MutexGuard<'_, SqliteStore> {
     store.lock().unwrap_or_else(PoisonError::into_inner)
+}
+
+/// The readings compared; where that cannot be yet, the plan alone and what is missing.
+fn compared(
+    site: &SiteFile,
+    imported: &Imported,
+) -> Result<(Comparison, Option<String>), WindowError> {
+    let missing = match compare(site, imported) {
+        Ok(comparison) => return Ok((comparison, None)),
+        Err(CompareError::NoReadings) => {
+            "There are no readings yet: import the files of the loggers. Until then the plan is shown."
+        }
+        Err(CompareError::Expect(ExpectError::NoLevel)) => {
+            "Readings are there, but no liquid level, so no load: import the readings of a level gauge. Until then the plan is shown."
+        }
+        Err(refused) => return Err(refused.into()),
+    };
+    Ok((nothing_compared(site)?, Some(missing.to_owned())))
 }
 
 fn known(site: &SiteFile, given: &Instrument) -> Known {

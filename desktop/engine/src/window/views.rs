@@ -76,6 +76,8 @@ pub struct Opened {
     pub runs: Vec<(String, String)>,
     /// The run shown, where it is the demo.
     pub run: Option<String>,
+    /// What keeps the readings from being compared, and what to do.
+    pub note: Option<String>,
     /// What goes with every output that could be acted on.
     pub cautions: Vec<String>,
 }
