@@ -53,6 +53,14 @@ test.each([
   },
 );
 
+test('enlarged, the point looked at is in the picture and nothing beyond the section is', () => {
+  const scale = fit(section, 764, 330, { zoom: 4, x_m: 38, depth_m: 4 });
+  expect(scale.px_per_m).toBeCloseTo(4 * fit(section, 764, 330).px_per_m, 9);
+  expect(scale.seen.right).toBeCloseTo(40, 9);
+  expect(scale.x(38)).toBeLessThan(764);
+  expect(scale.y(4)).toBeCloseTo(165, 9);
+});
+
 test('instruments near the plane stand on the section, the others on the plan at their bearing', () => {
   const scale = fit(section, 764, 330);
   const frame = planFrame(section, scale, 764);

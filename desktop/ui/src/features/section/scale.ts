@@ -9,25 +9,42 @@ export interface Scale {
   seen: { left: number; right: number; top: number; bottom: number };
 }
 
-/** Fits the section into a picture; where there is room to spare more ground is shown at the sides. */
-export function fit(section: SectionView, width: number, height: number): Scale {
+/** How much larger than the whole section the drawing is, step by step. */
+export const ZOOMS = [1, 1.6, 2.5, 4] as const;
+
+/** What is looked at: how large, and about which point of the section, m. */
+export interface Look {
+  zoom: number;
+  x_m: number;
+  depth_m: number;
+}
+
+/** Nearest place for the middle of a window of `seen` so that it stays within `from` to `to`. */
+function within(middle: number, seen: number, from: number, to: number): number {
+  if (seen >= to - from) return (from + to) / 2;
+  return Math.max(from + seen / 2, Math.min(to - seen / 2, middle));
+}
+
+/**
+ * Fits the section into a picture; where there is room to spare more ground is shown at the sides.
+ * Enlarged, the picture shows the part about the point that is looked at.
+ */
+export function fit(
+  section: SectionView,
+  width: number,
+  height: number,
+  look: Look = { zoom: 1, x_m: 0, depth_m: 0 },
+): Scale {
   const [left, right, top, bottom] = section.extent_m;
-  const px_per_m = Math.min(width / (right - left), height / (bottom - top));
-  const middle = (left + right) / 2;
-  const half = width / 2 / px_per_m;
-  const x = (x_m: number) => width / 2 + (x_m - middle) * px_per_m;
-  const spare = (height - (bottom - top) * px_per_m) / 2;
-  const y = (depth_m: number) => spare + (depth_m - top) * px_per_m;
+  const px_per_m = look.zoom * Math.min(width / (right - left), height / (bottom - top));
+  const [wide_m, high_m] = [width / px_per_m, height / px_per_m];
+  const x_m = within(look.x_m, wide_m, left, right) - wide_m / 2;
+  const depth_m = within(look.depth_m, high_m, top, bottom) - high_m / 2;
   return {
     px_per_m,
-    x,
-    y,
-    seen: {
-      left: middle - half,
-      right: middle + half,
-      top: top - spare / px_per_m,
-      bottom: bottom + spare / px_per_m,
-    },
+    x: (at_m) => (at_m - x_m) * px_per_m,
+    y: (at_m) => (at_m - depth_m) * px_per_m,
+    seen: { left: x_m, right: x_m + wide_m, top: depth_m, bottom: depth_m + high_m },
   };
 }
 

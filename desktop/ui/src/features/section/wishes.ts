@@ -22,7 +22,7 @@ export function sameness(instruments: readonly InstrumentNow[]): string {
   return instruments.map((now) => `${now.id} ${String(weight(now))}`).join(',');
 }
 
-/** Places marks and names of instruments on the section, clear of the names of the layers. */
+/** Places marks and names of instruments on the section, clear of the names of the layers and the two buttons. */
 export function placeMarks(
   instruments: readonly InstrumentNow[],
   section: SectionView,
@@ -43,9 +43,10 @@ export function placeMarks(
   }));
   const names = section.layers.map((layer) => ({
     x: 8,
-    y: scale.y(layer.top_m) + 2,
+    y: Math.max(0, scale.y(layer.top_m)) + 2,
     width: layer.name.length * CHARACTER_PX,
     height: 14,
   }));
-  return declutter(wishes, { x: 0, y: 0, width, height }, names, FURTHEST_PX);
+  const buttons = { x: width - 110, y: height - 60, width: 110, height: 60 };
+  return declutter(wishes, { x: 0, y: 0, width, height }, [...names, buttons], FURTHEST_PX);
 }

@@ -47,6 +47,8 @@ export class Session {
   cursorMs = $state(0);
   /** Rises whenever something was written, so that answers are fetched anew. */
   revision = $state(0);
+  /** What is looked for in the list of instruments. */
+  sought = $state('');
   /** Who signs, kept while the window is open. */
   who = $state('');
   #picked = $state<string | null>(null);
