@@ -9,7 +9,6 @@ import type {
   Field,
   ImportView,
   InstrumentInfo,
-  InstrumentNow,
   LimitsView,
   LogView,
   MomentView,
@@ -21,22 +20,20 @@ import type {
   WorkingView,
 } from './types';
 
+/** What the engine answered, in one system of units. */
 interface Recorded {
-  moments: {
-    strips: Omit<MomentView, 'instruments'>[];
-    instruments: { time_ms: number; instruments: InstrumentNow[] }[];
-  };
+  moments: MomentView[];
   section: SectionView;
-  contours: Record<Field, ContoursView>;
-  fill: ChartView;
+  contours: Partial<Record<Field, ContoursView>>;
+  fill_line: ChartView;
   charts: Record<string, { time: ChartView; pressure: ChartView }>;
-  readings: (Omit<ReadingView, 'now'> & { id: string })[];
-}
-
-interface Common {
-  opened: Opened;
+  readings: ReadingView[];
   working: WorkingView;
   faults: FaultView[];
+}
+
+/** Invented by hand: what stands in a store that people have written to. */
+interface Records {
   log: LogView;
   limits: LimitsView;
   infos: InstrumentInfo[];
@@ -45,7 +42,7 @@ interface Common {
 }
 
 /** The last one that is not after the moment, else the first. */
-function at<T extends { time_ms: number }>(recorded: readonly T[], timeMs: number): T {
+function at(recorded: readonly MomentView[], timeMs: number): MomentView {
   const found = recorded.findLast((one) => one.time_ms <= timeMs) ?? recorded[0];
   if (!found) throw new BackendError({ code: 'nothing-open', message: 'Nothing is recorded.' });
   return found;
@@ -53,61 +50,46 @@ function at<T extends { time_ms: number }>(recorded: readonly T[], timeMs: numbe
 
 export async function browser(): Promise<Backend> {
   const load = async <T>(file: Promise<{ default: unknown }>) => (await file).default as T;
-  const common = await load<Common>(import('./standin/common.json'));
+  const opened = await load<Opened>(import('./standin/opened.json'));
+  const records = await load<Records>(import('./standin/records.json'));
   const files: Record<Units, () => Promise<Recorded>> = {
     si: () => load<Recorded>(import('./standin/si.json')),
     us_customary: () => load<Recorded>(import('./standin/us_customary.json')),
   };
   const recorded = (units: Units) => files[units]();
-  const unwritable = () =>
-    Promise.reject(
-      new BackendError({
-        code: 'refused',
-        message:
-          'Nothing can be written in a browser: these answers are recorded. Start the companion to write.',
-      }),
-    );
 
   return {
-    openDemo: (run) => Promise.resolve({ ...common.opened, run: run ?? common.opened.run }),
+    openDemo: (run) => Promise.resolve({ ...opened, run: run ?? opened.run }),
     openStore: unwritable,
     opened: () => Promise.resolve(null),
-    moment: async (timeMs, units) => {
-      const { moments } = await recorded(units);
-      const { instruments } = at(moments.instruments, timeMs);
-      return { ...at(moments.strips, timeMs), instruments };
-    },
+    moment: async (timeMs, units) => at((await recorded(units)).moments, timeMs),
     section: async (units) => (await recorded(units)).section,
-    contours: async (field, _timeMs, units) => (await recorded(units)).contours[field],
-    fillLine: async (_timeMs, _picture, units) => (await recorded(units)).fill,
+    contours: async (field, _timeMs, units) => {
+      const contours = (await recorded(units)).contours[field];
+      return contours ?? notRecorded('contours-failed', 'These contours are');
+    },
+    fillLine: async (_timeMs, _picture, units) => (await recorded(units)).fill_line,
     reading: async (id, timeMs, units) => {
       const { readings, moments } = await recorded(units);
-      const reading = readings.find((one) => one.id === id);
-      const now = at(moments.instruments, timeMs).instruments.find((one) => one.id === id);
-      if (!reading || !now) throw unknown(id);
-      return { ...reading, now };
+      const reading = readings.find((one) => one.now.id === id);
+      const now = at(moments, timeMs).instruments.find((one) => one.id === id);
+      return reading && now ? { ...reading, now } : notRecorded('unknown-instrument', `${id} is`);
     },
     readingChart: async ({ id, against }, units) => {
-      const chart = (await recorded(units)).charts[id];
-      if (!chart) {
-        throw new BackendError({
-          code: 'chart-failed',
-          message: `No chart of ${id} is recorded. PE1, SC3 and PC2 have one; the companion draws all.`,
-        });
-      }
-      return chart[against];
+      const charts = (await recorded(units)).charts[id];
+      return charts ? charts[against] : notRecorded('chart-failed', `The chart of ${id} is`);
     },
-    working: () => Promise.resolve(common.working),
-    faults: () => Promise.resolve(common.faults),
-    instruments: () => Promise.resolve(common.infos),
-    log: () => Promise.resolve(common.log),
+    working: async (_id, _timeMs, units) => (await recorded(units)).working,
+    faults: async (_timeMs, units) => (await recorded(units)).faults,
+    instruments: () => Promise.resolve(records.infos),
+    log: () => Promise.resolve(records.log),
     decide: unwritable,
     note: unwritable,
-    limits: () => Promise.resolve(common.limits),
+    limits: () => Promise.resolve(records.limits),
     proposeLimits: unwritable,
-    importPreview: () => Promise.resolve(common.preview),
+    importPreview: () => Promise.resolve(records.preview),
     importCommit: unwritable,
-    siteText: () => Promise.resolve({ text: common.site_text, version: 1, versions: [] }),
+    siteText: () => Promise.resolve({ text: records.site_text, version: 1, versions: [] }),
     siteCheck: async (text, units) => check(text, (await recorded(units)).section),
     siteSave: unwritable,
     chooseReadings: () => Promise.resolve(['logger-a-2026-05.csv', 'east-hand-readings.csv']),
@@ -115,11 +97,19 @@ export async function browser(): Promise<Backend> {
   };
 }
 
-function unknown(id: string): BackendError {
-  return new BackendError({
-    code: 'unknown-instrument',
-    message: `The site has no instrument ${id}. Choose one of its list.`,
-  });
+function unwritable(): Promise<never> {
+  return Promise.reject(
+    new BackendError({
+      code: 'refused',
+      message:
+        'Nothing can be written in a browser: these answers are recorded. Start the companion to write.',
+    }),
+  );
+}
+
+function notRecorded(code: string, what: string): Promise<never> {
+  const message = `${what} not recorded for the window in a browser. The companion has all.`;
+  return Promise.reject(new BackendError({ code, message }));
 }
 
 /** Tells only whether the text is JSON; the engine tells more. */
