@@ -66,9 +66,9 @@ test('arrows walk over the section and the panel follows', async () => {
 test('one click changes every unit, and the choice is kept', async () => {
   const { backend } = await open();
   const moment = vi.spyOn(backend, 'moment');
-  await screen.findByText('10.90 m', { selector: 'dd' });
+  await screen.findByText(/^10\.9\d m$/, { selector: 'dd' });
   await fireEvent.click(screen.getByRole('button', { name: /^Units/ }));
-  await screen.findByText('35.8 ft', { selector: 'dd' });
+  await screen.findByText(/^35\.\d+ ft$/, { selector: 'dd' });
   expect(moment.mock.calls.at(-1)?.[1]).toBe('us_customary');
   await waitFor(() =>
     expect(screen.getByRole('region', { name: 'Chosen instrument' }).textContent).not.toMatch(
@@ -117,6 +117,54 @@ test('when nothing opens, the window says so and tries again', async () => {
   expect(trouble.textContent).toContain('Close it.');
   await fireEvent.click(within(trouble).getByRole('button', { name: 'Try again' }));
   expect(openDemo).toHaveBeenCalledTimes(2);
+});
+
+test('long work shows how far it is and can be cancelled', async () => {
+  let tell: (step: { what: string; done: number }) => void = () => undefined;
+  let fail: (error: BackendError) => void = () => undefined;
+  const cancelWork = vi.fn(() => {
+    fail(new BackendError({ code: 'cancelled', message: 'Cancelled. Nothing was changed.' }));
+    return Promise.resolve();
+  });
+  render(App, {
+    backend: await backendWith({
+      followWork: (follow) => {
+        tell = follow;
+        return Promise.resolve();
+      },
+      openDemo: () =>
+        new Promise((_, reject) => {
+          fail = reject;
+        }),
+      cancelWork,
+    }),
+  });
+  await screen.findByText('Opening the site …');
+  await new Promise((resolve) => setTimeout(resolve));
+  tell({ what: 'Comparing readings with what is expected', done: 0.4 });
+  await screen.findByText('Comparing readings with what is expected …');
+  expect(screen.getByRole<HTMLProgressElement>('progressbar').value).toBe(0.4);
+  await fireEvent.click(screen.getByRole('button', { name: 'Cancel' }));
+  expect((await screen.findByRole('alert')).textContent).toContain('Nothing was changed.');
+  expect(screen.queryByRole('progressbar')).toBeNull();
+});
+
+test('a checked text becomes a new site in a file of its own', async () => {
+  const newStore = vi.fn<Backend['newStore']>(() => Promise.resolve(null));
+  await open({ newStore }, 'site');
+  const start = await screen.findByRole<HTMLButtonElement>('button', { name: 'New site …' });
+  await waitFor(() => {
+    expect(start.disabled).toBe(false);
+  });
+  await fireEvent.click(start);
+  const dialog = screen.getByRole('dialog', { name: 'New site' });
+  await fireEvent.input(within(dialog).getByLabelText('Reason'), { target: { value: 'Tank 9.' } });
+  await fireEvent.input(within(dialog).getByLabelText('Your name'), {
+    target: { value: 'Ole Tamm' },
+  });
+  await fireEvent.click(within(dialog).getByRole('button', { name: /Choose the file/ }));
+  expect(newStore.mock.calls[0]?.[1]).toEqual({ who: 'Ole Tamm', why: 'Tank 9.' });
+  expect(screen.getByRole('dialog', { name: 'New site' })).toBeTruthy();
 });
 
 test('one failing drawing leaves the others on the page', async () => {

@@ -24,6 +24,7 @@ import type {
   SiteTextView,
   Units,
   WorkingView,
+  WorkStep,
 } from './types';
 
 export type * from './types';
@@ -48,12 +49,18 @@ export interface Backend {
   openDemo(run: string | null): Promise<Opened>;
   /** Opens the store of a site. */
   openStore(path: string): Promise<Opened>;
+  /** Keeps a new site in a file that the person chooses, and opens it; null when they think better of it. */
+  newStore(text: string, signature: Signature): Promise<Opened | null>;
+  /** Tells how far long work has come, from now on. */
+  followWork(tell: (step: WorkStep) => void): Promise<void>;
+  /** Stops the long work under way; what was asked for is then rejected with the code "cancelled". */
+  cancelWork(): Promise<void>;
   /** What is open; null when nothing is. */
   opened(): Promise<Opened | null>;
   moment(timeMs: number, units: Units): Promise<MomentView>;
   section(units: Units): Promise<SectionView>;
   contours(field: Field, timeMs: number, units: Units): Promise<ContoursView>;
-  fillLine(timeMs: number, picture: Picture, units: Units): Promise<ChartView>;
+  fillLine(picture: Picture, units: Units): Promise<ChartView>;
   reading(id: string, timeMs: number, units: Units): Promise<ReadingView>;
   readingChart(chart: ReadingChart, units: Units): Promise<ChartView>;
   working(id: string, timeMs: number, units: Units): Promise<WorkingView>;

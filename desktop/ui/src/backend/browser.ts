@@ -61,6 +61,9 @@ export async function browser(): Promise<Backend> {
   return {
     openDemo: (run) => Promise.resolve({ ...opened, run: run ?? opened.run }),
     openStore: unwritable,
+    newStore: unwritable,
+    followWork: () => Promise.resolve(),
+    cancelWork: () => Promise.resolve(),
     opened: () => Promise.resolve(null),
     moment: async (timeMs, units) => at((await recorded(units)).moments, timeMs),
     section: async (units) => (await recorded(units)).section,
@@ -68,7 +71,7 @@ export async function browser(): Promise<Backend> {
       const contours = (await recorded(units)).contours[field];
       return contours ?? notRecorded('contours-failed', 'These contours are');
     },
-    fillLine: async (_timeMs, _picture, units) => (await recorded(units)).fill_line,
+    fillLine: async (_picture, units) => (await recorded(units)).fill_line,
     reading: async (id, timeMs, units) => {
       const { readings, moments } = await recorded(units);
       const reading = readings.find((one) => one.now.id === id);

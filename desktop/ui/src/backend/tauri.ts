@@ -1,8 +1,8 @@
 // The shell of the desktop companion.
-import { invoke } from '@tauri-apps/api/core';
-import { open } from '@tauri-apps/plugin-dialog';
+import { Channel, invoke } from '@tauri-apps/api/core';
 import type { Backend } from './backend';
 import { BackendError } from './error';
+import type { WorkStep } from './types';
 
 async function call<T>(command: string, args: Record<string, unknown> = {}): Promise<T> {
   try {
@@ -20,11 +20,18 @@ export function inShell(): boolean {
 export const tauri: Backend = {
   openDemo: (run) => call('open_demo', { run }),
   openStore: (path) => call('open_store', { path }),
+  newStore: (text, signature) => call('new_store', { text, ...signature }),
+  followWork: (tell) => {
+    const channel = new Channel<WorkStep>();
+    channel.onmessage = tell;
+    return call('follow_work', { channel });
+  },
+  cancelWork: () => call('cancel_work'),
   opened: () => call('opened'),
   moment: (timeMs, units) => call('moment', { timeMs, units }),
   section: (units) => call('section', { units }),
   contours: (field, timeMs, units) => call('contours', { field, timeMs, units }),
-  fillLine: (timeMs, picture, units) => call('fill_line', { timeMs, ...picture, units }),
+  fillLine: (picture, units) => call('fill_line', { ...picture, units }),
   reading: (id, timeMs, units) => call('reading', { id, timeMs, units }),
   readingChart: (chart, units) => call('reading_chart', { ...chart, units }),
   working: (id, timeMs, units) => call('working', { id, timeMs, units }),
@@ -42,23 +49,6 @@ export const tauri: Backend = {
   siteText: () => call('site_text'),
   siteCheck: (text, units) => call('site_check', { text, units }),
   siteSave: (text, signature) => call('site_save', { text, ...signature }),
-  chooseReadings: async () => {
-    const chosen = await ask(() =>
-      open({
-        title: 'Files of readings',
-        multiple: true,
-        filters: [{ name: 'Delimited text', extensions: ['csv', 'tsv', 'txt', 'dat'] }],
-      }),
-    );
-    return chosen ?? [];
-  },
-  chooseStore: () => ask(() => open({ title: 'Site', multiple: false })),
+  chooseReadings: () => call('choose_readings'),
+  chooseStore: () => call('choose_store'),
 };
-
-async function ask<T>(dialog: () => Promise<T>): Promise<T> {
-  try {
-    return await dialog();
-  } catch (thrown) {
-    throw BackendError.from(thrown);
-  }
-}

@@ -12,7 +12,6 @@ async function draw(cursorOffsetMs = 0) {
   const backend = await backendWith();
   const opened: Opened = await backend.openDemo(null);
   const chart: ChartView = await backend.fillLine(
-    opened.last_ms,
     { width: 764, height: 220, theme: 'light' },
     'si',
   );

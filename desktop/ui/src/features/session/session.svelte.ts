@@ -5,8 +5,10 @@ import type {
   MomentView,
   Opened,
   SectionView,
+  Signature,
   Theme,
   Units,
+  WorkStep,
 } from '../../backend/backend';
 import { Asked } from '../../shared/asked.svelte';
 import { everyFrame } from '../../shared/frame';
@@ -40,6 +42,8 @@ export class Session {
   readonly backend: Backend;
   opened = $state.raw<Opened | null>(null);
   openError = $state.raw<unknown>(null);
+  /** Long work under way and how far it has come; null when there is none. */
+  work = $state.raw<WorkStep | null>(null);
   view = $state<View>('section');
   units = $state<Units>(recall('units', UNITS) ?? 'si');
   theme = $state<Theme>(recall('theme', THEMES) ?? systemTheme());
@@ -116,7 +120,26 @@ export class Session {
 
   /** What was open last, else the invented site. */
   start(): Promise<void> {
-    return this.#open(async () => (await this.backend.opened()) ?? this.backend.openDemo(null));
+    return this.#open(async () => {
+      await this.backend.followWork((step) => {
+        if (this.work) this.work = step;
+      });
+      return (await this.backend.opened()) ?? this.backend.openDemo(null);
+    });
+  }
+
+  /** Does what takes long, with its progress to be seen. */
+  async during<T>(what: string, act: () => Promise<T>): Promise<T> {
+    this.work = { what, done: 0 };
+    try {
+      return await act();
+    } finally {
+      this.work = null;
+    }
+  }
+
+  cancel(): void {
+    void this.backend.cancelWork();
   }
 
   openDemo(run: string | null): Promise<void> {
@@ -125,6 +148,15 @@ export class Session {
 
   openStore(path: string): Promise<void> {
     return this.#open(() => this.backend.openStore(path));
+  }
+
+  /** A new site in a file of its own; false when the person thinks better of it. */
+  async newStore(text: string, signature: Signature): Promise<boolean> {
+    const opened = await this.during('Keeping the new site', () =>
+      this.backend.newStore(text, signature),
+    );
+    if (opened) this.#show(opened);
+    return opened !== null;
   }
 
   /** After something was written. */
@@ -141,17 +173,20 @@ export class Session {
 
   async #open(ask: () => Promise<Opened>): Promise<void> {
     try {
-      const opened = await ask();
-      this.moment.forget();
-      this.section.forget();
-      this.#picked = null;
-      this.opened = opened;
-      this.openError = null;
-      this.cursorMs = opened.last_ms;
-      this.written();
+      this.#show(await this.during('Opening the site', ask));
     } catch (error) {
       this.openError = error;
     }
+  }
+
+  #show(opened: Opened): void {
+    this.moment.forget();
+    this.section.forget();
+    this.#picked = null;
+    this.opened = opened;
+    this.openError = null;
+    this.cursorMs = opened.last_ms;
+    this.written();
   }
 }
 

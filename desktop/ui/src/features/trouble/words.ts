@@ -9,6 +9,8 @@ export interface Treatment {
 
 const byCode: Record<string, Treatment> = {
   'nothing-open': { title: 'No site is open', again: false },
+  panic: { title: 'The program failed inside itself', again: true },
+  'not-chosen': { title: 'Nobody chose this file', again: false },
   cancelled: { title: 'Stopped', again: true },
   'unknown-instrument': { title: 'No such instrument', again: false },
   'unknown-run': { title: 'No such run', again: false },
