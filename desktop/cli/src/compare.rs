@@ -87,11 +87,6 @@ fn import_lines(report: &ImportReport) -> anyhow::Result<()> {
         report.duplicates_ignored,
         report.conflicts.len()
     ))?;
-    for file in &report.files {
-        for one in file.refused.iter().take(5) {
-            output::say(format!("  {}: {one}", file.file))?;
-        }
-    }
     for suspicion in &report.suspicions {
         output::say(format!("  look at: {suspicion}"))?;
     }

@@ -80,3 +80,29 @@ pub fn readings(run: &str) -> Vec<String> {
 pub fn text(path: &Path) -> String {
     path.to_str().expect("a path in UTF-8").to_owned()
 }
+
+/// The demo's site with a few instruments left: little to calculate and to draw.
+pub fn small_site(folder: &Path) -> String {
+    let source = std::fs::read_to_string(demo().join("site.json")).unwrap();
+    let mut site: Value = serde_json::from_str(&source).unwrap();
+    let kept = ["PE1", "SC3", "LG1"];
+    let instruments = site["instruments"].as_array_mut().unwrap();
+    instruments.retain(|one| kept.contains(&one["id"].as_str().unwrap()));
+    for one in instruments.iter_mut() {
+        if let Some(neighbours) = one["neighbours"].as_array_mut() {
+            neighbours.retain(|id| kept.contains(&id.as_str().unwrap()));
+        }
+    }
+    for layout in site["readings"].as_array_mut().unwrap() {
+        let columns = layout["columns"].as_object_mut().unwrap();
+        columns.retain(|_, of| of["instrument"].as_str().is_none_or(|id| kept.contains(&id)));
+        columns.retain(|_, of| of["channel"] != "temperature:PM2");
+    }
+    site["readings"].as_array_mut().unwrap().retain(|layout| {
+        let name = layout["name"].as_str().unwrap();
+        name.starts_with("Logger")
+    });
+    let file = folder.join("site.json");
+    std::fs::write(&file, site.to_string()).unwrap();
+    text(&file)
+}

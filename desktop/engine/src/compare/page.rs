@@ -6,7 +6,7 @@ use super::words::{decimals, kind_word, place_words, stage_at, unit_word};
 use super::{Comparison, Row, Timeline};
 use crate::chart::theme::LIGHT;
 use crate::chart::{Chart, ChartError, LimitKind, Mark, Size};
-use crate::import::ImportReport;
+use crate::import::{FileReport, ImportReport, LayoutUsed};
 use crate::report::{
     ChartSection, Fact, FaultRow, ImportFile, ImportMessage, InstrumentRow, LimitValue,
     LoadAtReading, Margin, ReportPage, values,
@@ -108,7 +108,9 @@ pub fn report_page(
         instruments,
         faults: fault_rows(site, comparison, import),
         charts: sections,
-        import: import.files.iter().map(import_file).collect(),
+        import: (import.files.iter().enumerate())
+            .map(|(place, file)| import_file(import, place, file))
+            .collect(),
     })
 }
 
@@ -307,24 +309,66 @@ pub fn next_step(state: DataState) -> &'static str {
     }
 }
 
-fn import_file(file: &crate::import::FileReport) -> ImportFile {
-    let mut messages: Vec<ImportMessage> = file
-        .refused
-        .iter()
-        .map(|refused| ImportMessage {
-            line: Some(u64::from(refused.line)),
+/// Lines of one file that are shown; beyond that refusals are counted by reason.
+const SHOWN_REFUSALS: usize = 100;
+
+fn import_file(import: &ImportReport, place: usize, file: &FileReport) -> ImportFile {
+    let remark = |lost_data, text| ImportMessage { line: None, lost_data, text };
+    let mut messages = Vec::new();
+    match file.layout {
+        LayoutUsed::Named(_) => {}
+        LayoutUsed::Guessed => messages.push(remark(
+            false,
+            "No layout of the site file fits: it was guessed. Check it before use.".to_owned(),
+        )),
+        LayoutUsed::None => messages.push(remark(
+            true,
+            "Not understood, nothing taken. Describe it under \"readings\" in the site file."
+                .to_owned(),
+        )),
+    }
+    messages.extend(file.columns.iter().map(|column| {
+        remark(true, format!("column \"{}\" not taken: {}.", column.header, column.reason))
+    }));
+    messages.extend(file.notes.iter().map(|note| remark(false, note.clone())));
+    if file.out_of_order > 0 {
+        messages.push(remark(
+            false,
+            format!("{} rows stand after later ones; sorted by time.", file.out_of_order),
+        ));
+    }
+    messages.extend(file.refused.iter().take(SHOWN_REFUSALS).map(|refused| ImportMessage {
+        line: Some(u64::from(refused.line)),
+        lost_data: true,
+        text: refused.what(),
+    }));
+    if file.refused_count() > SHOWN_REFUSALS as u64 {
+        messages.extend(file.refused_by_reason.iter().map(|(reason, count)| {
+            remark(
+                true,
+                format!("in all {count} times {reason}; the first {SHOWN_REFUSALS} are listed."),
+            )
+        }));
+    }
+    let lost = import.conflicts.iter().filter(|one| one.refused_at.file as usize == place);
+    messages.extend(lost.take(SHOWN_REFUSALS).map(|conflict| {
+        let kept_at = conflict.kept_at;
+        let kept_in = import.files.get(kept_at.file as usize).map_or("", |file| &file.file);
+        ImportMessage {
+            line: Some(u64::from(conflict.refused_at.line)),
             lost_data: true,
-            text: refused.to_string(),
-        })
-        .collect();
-    let note = |text: &String| ImportMessage { line: None, lost_data: false, text: text.clone() };
-    messages.extend(file.notes.iter().map(note));
+            text: format!(
+                "{} has two readings for one time: {} not taken, {} of {kept_in} line {} kept.",
+                conflict.of, conflict.refused, conflict.kept, kept_at.line
+            ),
+        }
+    }));
     ImportFile {
         name: file.file.clone(),
         rows: file.rows as usize,
         kept: file.readings as usize,
         duplicates: 0,
-        refused: file.refused_by_reason.values().sum::<u64>() as usize,
+        refused: file.refused_count() as usize,
         messages,
     }
 }

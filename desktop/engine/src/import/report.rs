@@ -147,13 +147,19 @@ pub struct Refused {
     pub reason: Reason,
 }
 
+impl Refused {
+    /// What stands there and why it was refused, without the line.
+    #[must_use]
+    pub fn what(&self) -> String {
+        let what = format!("\"{}\" is {}", self.text, self.reason);
+        if self.column.is_empty() { what } else { format!("{}: {what}", self.column) }
+    }
+}
+
 impl fmt::Display for Refused {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(f, "line {}", self.line)?;
-        if !self.column.is_empty() {
-            write!(f, ", {}", self.column)?;
-        }
-        write!(f, ": \"{}\" is {}", self.text, self.reason)
+        let separator = if self.column.is_empty() { ':' } else { ',' };
+        write!(f, "line {}{separator} {}", self.line, self.what())
     }
 }
 
