@@ -78,7 +78,7 @@ fn changes(comparison: &Comparison, zone: &jiff::tz::TimeZone) -> anyhow::Result
 fn import_lines(report: &ImportReport) -> anyhow::Result<()> {
     let (mut readings, mut refused) = (0, 0);
     for file in &report.files {
-        readings += file.readings;
+        readings += file.readings - file.duplicates - file.contradicted;
         refused += file.refused_by_reason.values().sum::<u64>();
     }
     output::say(format!(

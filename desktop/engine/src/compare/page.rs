@@ -366,8 +366,8 @@ fn import_file(import: &ImportReport, place: usize, file: &FileReport) -> Import
     ImportFile {
         name: file.file.clone(),
         rows: file.rows as usize,
-        kept: file.readings as usize,
-        duplicates: 0,
+        kept: (file.readings - file.duplicates - file.contradicted) as usize,
+        duplicates: file.duplicates as usize,
         refused: file.refused_count() as usize,
         messages,
     }

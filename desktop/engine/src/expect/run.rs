@@ -3,7 +3,9 @@
 use super::{ExpectError, Instrument, LoadHistory, Model};
 use brimstead_core::config::COLUMN_CELLS;
 use brimstead_core::consolidation::Factor;
-use brimstead_core::expectation::{self, Column, ColumnState, Moment, Point, Zero, envelope};
+use brimstead_core::expectation::{
+    self, Column, ColumnState, LiquidPressures, Moment, Point, Zero, envelope,
+};
 use brimstead_core::load::PlanPosition;
 use brimstead_core::quantity::Expected;
 use rayon::prelude::*;
@@ -75,9 +77,33 @@ fn group_by_place<'a>(model: &'a Model, wanted: &'a [Vec<i64>]) -> Vec<Vec<Membe
     groups.into_values().collect()
 }
 
-/// Every instant at which a group is stepped: those of the history from the baseline on and those
+/// What loads the ground at one instant; the same in every case of the band.
+struct Load {
+    time_s: i64,
+    liquid_level_m: f64,
+    liquid_kpa: LiquidPressures,
+}
+
+impl Load {
+    fn at(model: &Model, history: &LoadHistory, time_s: i64) -> Result<Self, ExpectError> {
+        let liquid_level_m = history.level_at(time_s).ok_or(ExpectError::NoLevel)?;
+        let liquid_kpa = model.liquid_kpa(time_s, liquid_level_m)?;
+        Ok(Self { time_s, liquid_level_m, liquid_kpa })
+    }
+}
+
+/// The instants at which a group is stepped: the baseline, then those of the history and those
 /// asked for.
-fn step_times(model: &Model, history: &LoadHistory, group: &[Member<'_>]) -> Vec<i64> {
+struct Steps {
+    baseline: Load,
+    after: Vec<Load>,
+}
+
+fn steps_of(
+    model: &Model,
+    history: &LoadHistory,
+    group: &[Member<'_>],
+) -> Result<Steps, ExpectError> {
     let asked = group.iter().flat_map(|member| member.times.iter().copied());
     let mut times: Vec<i64> =
         history.points().iter().map(|point| point.time_s).chain(asked).collect();
@@ -87,7 +113,11 @@ fn step_times(model: &Model, history: &LoadHistory, group: &[Member<'_>]) -> Vec
     // Nothing is computed beyond the last instant that somebody asked for.
     let last_asked = group.iter().filter_map(|member| member.times.last()).max();
     times.retain(|time_s| last_asked.is_some_and(|last| time_s <= last));
-    times
+    let load_at = |time_s| Load::at(model, history, time_s);
+    Ok(Steps {
+        baseline: load_at(model.baseline_s)?,
+        after: times.into_iter().map(load_at).collect::<Result<_, _>>()?,
+    })
 }
 
 fn run_group(
@@ -96,12 +126,12 @@ fn run_group(
     group: &[Member<'_>],
 ) -> Result<Vec<Answer>, ExpectError> {
     let Some(first) = group.first() else { return Ok(Vec::new()) };
-    let times = step_times(model, history, group);
+    let steps = steps_of(model, history, group)?;
     let place = first.instrument.sensor.place;
     // [member][case][asked time]
     let mut values: Vec<Vec<Vec<Option<f64>>>> = group.iter().map(|_| Vec::new()).collect();
     for case in 0..model.cases.len() {
-        let by_member = run_case(model, case, history, place, group, &times)?;
+        let by_member = run_case(model, case, place, group, &steps)?;
         for (all, one) in values.iter_mut().zip(by_member) {
             all.push(one);
         }
@@ -124,12 +154,11 @@ fn join_cases(member: &Member<'_>, cases: &[Vec<Option<f64>>]) -> Answer {
 fn run_case(
     model: &Model,
     case: usize,
-    history: &LoadHistory,
     place: PlanPosition,
     group: &[Member<'_>],
-    times: &[i64],
+    steps: &Steps,
 ) -> Result<Vec<Vec<Option<f64>>>, ExpectError> {
-    let mut run = Run::start(model, case, place, history)?;
+    let mut run = Run::start(model, case, place, &steps.baseline)?;
     let mut followed = Vec::with_capacity(group.len());
     for member in group {
         followed.push(Followed::new(&run, model, case, member)?);
@@ -137,10 +166,10 @@ fn run_case(
     for member in &mut followed {
         member.read(&run, model.baseline_s)?;
     }
-    for &time_s in times {
-        run.advance(model, history, time_s)?;
+    for load in &steps.after {
+        run.advance(load)?;
         for member in &mut followed {
-            member.read(&run, time_s)?;
+            member.read(&run, load.time_s)?;
         }
     }
     Ok(followed.into_iter().map(|member| member.values).collect())
@@ -160,7 +189,7 @@ impl Run {
         model: &Model,
         case: usize,
         place: PlanPosition,
-        history: &LoadHistory,
+        baseline: &Load,
     ) -> Result<Self, ExpectError> {
         let site = &model.cases[case].1;
         let column = Column::new(site, place).map_err(ExpectError::Site)?;
@@ -172,22 +201,15 @@ impl Run {
             .map_err(ExpectError::Site)?;
         let mut run = Self { column, state, factor, liquid_level_m: 0.0 };
         // Liquid that stood in the tank at the baseline came on by then.
-        run.advance(model, history, model.baseline_s)?;
+        run.advance(baseline)?;
         Ok(run)
     }
 
-    fn advance(
-        &mut self,
-        model: &Model,
-        history: &LoadHistory,
-        time_s: i64,
-    ) -> Result<(), ExpectError> {
-        let level_m = history.level_at(time_s).ok_or(ExpectError::NoLevel)?;
-        let liquid_kpa = model.liquid_kpa(time_s, level_m)?;
+    fn advance(&mut self, load: &Load) -> Result<(), ExpectError> {
         self.column
-            .advance(&mut self.state, time_s, &liquid_kpa, &mut self.factor)
+            .advance(&mut self.state, load.time_s, &load.liquid_kpa, &mut self.factor)
             .map_err(ExpectError::Site)?;
-        self.liquid_level_m = level_m;
+        self.liquid_level_m = load.liquid_level_m;
         Ok(())
     }
 
@@ -271,13 +293,13 @@ pub fn state_at(
     let times = [time_s];
     let member = Member { index: 0, instrument, times: &times };
     let group = [member];
-    let steps = step_times(model, history, &group);
-    let mut run = Run::start(model, 0, instrument.sensor.place, history)?;
+    let steps = steps_of(model, history, &group)?;
+    let mut run = Run::start(model, 0, instrument.sensor.place, &steps.baseline)?;
     let point = Point::new(model.likely(), instrument.sensor)
         .map_err(|source| refused(instrument, source))?;
     let zero = point.zero(&run.column, &run.state);
-    for step_s in steps {
-        run.advance(model, history, step_s)?;
+    for load in &steps.after {
+        run.advance(load)?;
     }
     let moment = run.moment();
     Ok(MomentState { column: run.column, state: run.state, point, zero, moment })

@@ -45,6 +45,10 @@ pub struct FileReport {
     pub rows_accepted: u64,
     /// Readings taken, missing marks not counted.
     pub readings: u64,
+    /// Of these, readings that stood before with the same value; the first was kept.
+    pub duplicates: u64,
+    /// Of these, readings that stood before with another value; the first was kept.
+    pub contradicted: u64,
     /// Fields with a missing-value mark or nothing in them.
     pub missing: u64,
     /// What was refused, by line.
@@ -211,6 +215,8 @@ impl FileReport {
             rows: 0,
             rows_accepted: 0,
             readings: 0,
+            duplicates: 0,
+            contradicted: 0,
             missing: 0,
             refused: Vec::new(),
             refused_by_reason: BTreeMap::new(),

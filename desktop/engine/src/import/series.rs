@@ -94,9 +94,12 @@ impl Series {
             if later.time_s != first.time_s {
                 return false;
             }
+            let file = report.files.get_mut(later.source as usize);
             if later.value == first.value {
                 report.duplicates_ignored += 1;
+                file.into_iter().for_each(|file| file.duplicates += 1);
             } else {
+                file.into_iter().for_each(|file| file.contradicted += 1);
                 report.conflicts.push(Conflict {
                     of: of.to_owned(),
                     time_s: first.time_s,
