@@ -46,8 +46,6 @@ set_up() {
   done
   need qemu-system-arm "emulates the logger's processor" qemu-system-arm
   need npm "builds and checks the front end of the window" nodejs npm
-  pkg-config --exists webkit2gtk-4.1 2>/dev/null || packages "the window is drawn by it" \
-    pkg-config libwebkit2gtk-4.1-dev libgtk-3-dev libsoup-3.0-dev libjavascriptcoregtk-4.1-dev librsvg2-dev
   # From here on nothing needs the network.
   cargo fetch --locked && cargo fetch --locked --manifest-path firmware-demo/image/Cargo.toml
 }
@@ -70,8 +68,6 @@ step "documentation" documentation
 step "build" cargo build --locked
 step "tests" cargo test --locked --no-fail-fast
 step "front end of the window" front_end
-step "lints of the window's shell" cargo clippy --locked -p brimstead-app --all-targets -- -D warnings
-step "window's shell" cargo test --locked -p brimstead-app
 step "core for the logger's processor" bash firmware-demo/build.sh core
 step "no panic is reachable in the core" bash firmware-demo/build.sh no-panic
 step "logger image" bash firmware-demo/build.sh image

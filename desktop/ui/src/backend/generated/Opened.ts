@@ -45,6 +45,10 @@ runs: Array<[string, string]>,
  */
 run: string | null, 
 /**
+ * What keeps the readings from being compared, and what to do.
+ */
+note: string | null, 
+/**
  * What goes with every output that could be acted on.
  */
 cautions: Array<string>, };
