@@ -34,6 +34,30 @@ test.each(VIEWS.map(([view]) => view))('%s comes up and axe finds nothing', asyn
   await expectAccessible(container);
 });
 
+test.each(VIEWS.map(([view]) => view))('%s asks nothing more once it is there', async (view) => {
+  let asked = 0;
+  const backend = await backendWith();
+  const counting = new Proxy(backend, {
+    get(target, name) {
+      const found: unknown = Reflect.get(target, name);
+      if (typeof found !== 'function') return found;
+      return (...given: unknown[]) => {
+        asked += 1;
+        return Reflect.apply(found, target, given) as unknown;
+      };
+    },
+  });
+  history.replaceState(null, '', `#/${view}`);
+  render(App, { backend: counting });
+  await screen.findByText('Brackmoor Terminal, tank T-7');
+  const rest = () => new Promise((resolve) => setTimeout(resolve, 1500));
+  await rest();
+  const before = asked;
+  expect(before).toBeGreaterThan(2);
+  await rest();
+  expect(asked).toBe(before);
+});
+
 test('the window opens at the most pressing instrument, with the caution beside the verdict', async () => {
   await open();
   const panel = await screen.findByRole('region', { name: 'Chosen instrument' });

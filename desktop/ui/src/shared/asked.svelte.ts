@@ -1,3 +1,4 @@
+import { WhenQuiet } from './frame';
 import { Latest } from './latest';
 
 /**
@@ -48,4 +49,32 @@ export class Asked<Q, A> {
     this.answered = null;
     this.error = null;
   }
+}
+
+/** What an answer depends on: a moment, and what else. */
+export type AtMoment = { timeMs: number } & Record<string, unknown>;
+
+/**
+ * Asks at once for something else, and once the moment rests when only the moment moved: what
+ * takes long must not be asked for at every step of a drag. What came earlier never comes after.
+ * It reads no state, so that an effect may call it without being run again by the answer.
+ */
+export function askAtRest<Q extends AtMoment, A>(
+  asked: Asked<Q, A>,
+  quietMs: number,
+): (question: Q, revision: number) => void {
+  const rest = new WhenQuiet<Q>(quietMs, (question) => {
+    asked.ask(question);
+  });
+  let before = '';
+  return (question, revision) => {
+    const other = JSON.stringify({ ...question, timeMs: 0, revision });
+    if (other === before) {
+      rest.set(question);
+      return;
+    }
+    before = other;
+    rest.drop();
+    asked.ask(question);
+  };
 }

@@ -13,13 +13,26 @@ export function everyFrame<T>(draw: (value: T) => void): (value: T) => void {
   };
 }
 
-/** Calls `act` with the newest value once it has not changed for `quietMs`. */
-export function whenQuiet<T>(quietMs: number, act: (value: T) => void): (value: T) => void {
-  let timer: ReturnType<typeof setTimeout> | undefined;
-  return (value) => {
-    clearTimeout(timer);
-    timer = setTimeout(() => {
-      act(value);
-    }, quietMs);
-  };
+/** Acts on the newest value once it has not changed for `quietMs`. */
+export class WhenQuiet<T> {
+  #timer: ReturnType<typeof setTimeout> | undefined;
+  #quietMs: number;
+  #act: (value: T) => void;
+
+  constructor(quietMs: number, act: (value: T) => void) {
+    this.#quietMs = quietMs;
+    this.#act = act;
+  }
+
+  set(value: T): void {
+    this.drop();
+    this.#timer = setTimeout(() => {
+      this.#act(value);
+    }, this.#quietMs);
+  }
+
+  /** Forgets the value that waits. */
+  drop(): void {
+    clearTimeout(this.#timer);
+  }
 }
