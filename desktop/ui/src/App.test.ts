@@ -191,6 +191,13 @@ test('a checked text becomes a new site in a file of its own', async () => {
   expect(screen.getByRole('dialog', { name: 'New site' })).toBeTruthy();
 });
 
+test('what keeps the readings from being compared stands over every view', async () => {
+  const { openDemo } = await backendWith();
+  const note = 'No reading of a level gauge: the load is unknown. Import one.';
+  await open({ openDemo: async (run) => ({ ...(await openDemo(run)), note }) }, 'log');
+  expect((await screen.findByRole('alert')).textContent).toBe(note);
+});
+
 test('one failing drawing leaves the others on the page', async () => {
   await open({ fillLine: failing('The disk is away.') });
   const trouble = await screen.findByRole('alert');
